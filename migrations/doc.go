@@ -1,0 +1,2 @@
+// Package migrations holds the numbered SQL, embedded.
+package migrations

@@ -1,0 +1,2 @@
+// Package balance holds oscillator physics, the vertical pattern and bench notes.
+package balance

@@ -1,0 +1,3 @@
+// Package entry says what a reading should be, and whether a typed one smells; plausibility
+// only, blind to limits.
+package entry

@@ -1,0 +1,2 @@
+// Package lot holds the statistics of batches, rounds and readers.
+package lot

@@ -1,0 +1,2 @@
+// Package outlook forecasts open movements from a Prior.
+package outlook

@@ -1,0 +1,2 @@
+// Package api is the JSON API, version 1, and its OpenAPI document.
+package api

@@ -1,0 +1,2 @@
+// Package bench holds the adjusters' pages.
+package bench

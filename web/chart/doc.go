@@ -1,0 +1,2 @@
+// Package chart draws server-side SVG.
+package chart

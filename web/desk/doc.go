@@ -1,0 +1,2 @@
+// Package desk holds the QA lead's pages.
+package desk

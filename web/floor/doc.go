@@ -1,0 +1,2 @@
+// Package floor holds the technicians' pages.
+package floor

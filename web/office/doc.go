@@ -1,0 +1,2 @@
+// Package office holds set-up: accounts, programmes, calibres, depositors.
+package office

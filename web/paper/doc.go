@@ -1,0 +1,2 @@
+// Package paper holds certificates and reports.
+package paper

@@ -1,0 +1,3 @@
+// Package part holds components on trial values: holder drawing, criteria table, verdict
+// mark, programme strip.
+package part

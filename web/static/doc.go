@@ -1,0 +1,2 @@
+// Package static embeds styles, scripts and fonts and serves them under hashed names.
+package static
