@@ -1,0 +1,126 @@
+// Ratehouse runs the trials of a chronometer-testing laboratory: subcommands, flags and
+// environment; it wires the rest.
+package main
+
+import (
+	"context"
+	"fmt"
+	"io"
+	"os"
+	"os/signal"
+	"runtime/debug"
+	"syscall"
+)
+
+// Exit codes of every subcommand.
+const (
+	exitDone    = 0
+	exitRefused = 1 // done with refusals, or what was checked is not right
+	exitUsage   = 2 // usage or set-up error, unreadable input, unwritable output
+)
+
+// program is what a subcommand may touch of the process.
+type program struct {
+	getenv         func(string) string
+	stdin          io.Reader
+	stdout, stderr io.Writer
+}
+
+// command is one subcommand. A command without run is listed and not built yet.
+type command struct {
+	name    string
+	does    string // one line
+	example string
+	run     func(ctx context.Context, p program, args []string) int
+}
+
+// commands is the one table of subcommands, in the order in which help lists them. To add a
+// command give it a run function in its own file of this package.
+func commands() []command {
+	return []command{
+		{"serve", "run the laboratory's web service", "RATEHOUSE_ADDR=127.0.0.1:8080 ratehouse serve", nil},
+		{"demo", "serve an invented laboratory with demo data", "ratehouse demo", nil},
+		{"judge", "judge movements from a file of rates or states", "ratehouse judge rates.csv", runJudge},
+		{"outlook", "estimate how likely open movements will pass", "ratehouse outlook -history past.csv open.csv", nil},
+		{"simulate", "make physically plausible movements", "ratehouse simulate -n 100 -seed 1", nil},
+		{"programme", "check a programme file", "ratehouse programme check winter.json", nil},
+		{"verify", "verify a certificate file", "ratehouse verify -key lab.pub certificate.json", nil},
+		{"migrate", "bring the database up to date", "DATABASE_OWNER_URL=postgres://... ratehouse migrate", nil},
+		{"backup", "write a backup", "ratehouse backup lab.backup", nil},
+		{"restore", "restore a backup into an empty database", "ratehouse restore lab.backup", nil},
+		{"journal", "verify the journal", "ratehouse journal verify", nil},
+		{"account", "add, list or disable accounts", "ratehouse account add -role technician ada < password", nil},
+		{"token", "add, list or revoke tokens", "ratehouse token add -scope readings bench-3", nil},
+		{"send", "send readings from a file to a server", "ratehouse send readings.csv", nil},
+		{"tls", "make a certificate for the local network", "ratehouse tls init", nil},
+		{"validate", "check the program against published values", "ratehouse validate", nil},
+		{"version", "print the version", "ratehouse version", runVersion},
+	}
+}
+
+func main() {
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	code := run(ctx, os.Args[1:], os.Getenv, os.Stdin, os.Stdout, os.Stderr)
+	stop()
+	os.Exit(code)
+}
+
+// run is the whole program; it returns the exit code.
+func run(ctx context.Context, args []string, getenv func(string) string, stdin io.Reader, stdout, stderr io.Writer) int {
+	if len(args) == 0 {
+		usage(stderr)
+		return exitUsage
+	}
+	switch args[0] {
+	case "-h", "-help", "--help", "help":
+		usage(stdout)
+		return exitDone
+	}
+	for _, c := range commands() {
+		if c.name != args[0] {
+			continue
+		}
+		if wantsHelp(args[1:]) {
+			fmt.Fprintf(stdout, "ratehouse %s: %s\n\nExample:\n  %s\n", c.name, c.does, c.example)
+			return exitDone
+		}
+		if c.run == nil {
+			fmt.Fprintf(stderr, "ratehouse %s: not built yet\n", c.name)
+			return exitUsage
+		}
+		return c.run(ctx, program{getenv, stdin, stdout, stderr}, args[1:])
+	}
+	fmt.Fprintf(stderr, "ratehouse: unknown command %q; ratehouse -h lists the commands\n", args[0])
+	return exitUsage
+}
+
+// wantsHelp tells whether the first argument asks for help. Commands with flags of their own
+// print their flags as well.
+func wantsHelp(args []string) bool {
+	return len(args) > 0 && (args[0] == "-h" || args[0] == "-help" || args[0] == "--help")
+}
+
+func usage(w io.Writer) {
+	fmt.Fprint(w, "Usage: ratehouse COMMAND [arguments]\n\nCommands:\n")
+	for _, c := range commands() {
+		fmt.Fprintf(w, "  %-10s %s\n", c.name, c.does)
+	}
+	fmt.Fprint(w, "\nratehouse COMMAND -h shows an example.\n")
+}
+
+// runVersion prints the module version and the revision it was built from.
+func runVersion(_ context.Context, p program, _ []string) int {
+	version, revision := "devel", ""
+	if info, ok := debug.ReadBuildInfo(); ok {
+		if v := info.Main.Version; v != "" && v != "(devel)" {
+			version = v
+		}
+		for _, s := range info.Settings {
+			if s.Key == "vcs.revision" {
+				revision = " " + s.Value
+			}
+		}
+	}
+	fmt.Fprintf(p.stdout, "ratehouse %s%s\n", version, revision)
+	return exitDone
+}

@@ -1,0 +1,75 @@
+package trial
+
+// Milli counts thousandths: of a second for a state, of a second per day for a rate, of a degree
+// for a temperature.
+type Milli int64
+
+// Exact gives the number itself, thousandths divided out.
+func (m Milli) Exact() Exact { return Ratio(int64(m), 1000) }
+
+// String prints the shortest decimal: Milli(1500) is 1.5.
+func (m Milli) String() string { return m.Exact().short() }
+
+// State is indicated minus reference time in thousandths of a second, positive when ahead.
+type State int64
+
+// Exact gives the state in seconds.
+func (s State) Exact() Exact { return Ratio(int64(s), 1000) }
+
+// String prints the shortest decimal in seconds.
+func (s State) String() string { return s.Exact().short() }
+
+// SecondsPerDay is the length of the day a rate is referred to.
+const SecondsPerDay = 86_400
+
+// Rate is a daily rate as an exact rational number of thousandths of s/d, positive = gaining. The
+// zero value means not read, which is never the same as a rate of zero.
+type Rate struct{ num, den int64 }
+
+// RateOf is a rate of so many thousandths of s/d.
+func RateOf(milli int64) Rate { return Rate{milli, 1} }
+
+// RateBetween is the rate that leads from one state to the other in so many whole seconds:
+// (to - from) · 86,400 / seconds. Without a positive interval, or with states more than a hundred
+// million seconds apart, there is no rate and the result is the zero Rate.
+func RateBetween(from, to State, seconds int64) Rate {
+	diff := int64(to) - int64(from)
+	const far = 100_000_000_000
+	if seconds <= 0 || diff > far || diff < -far {
+		return Rate{}
+	}
+	if seconds == SecondsPerDay {
+		return Rate{diff, 1}
+	}
+	return Rate{diff * SecondsPerDay, seconds}
+}
+
+// Known tells whether the rate was read at all.
+func (r Rate) Known() bool { return r.den != 0 }
+
+// Exact gives the rate in s/d; zero for a rate not read.
+func (r Rate) Exact() Exact {
+	if r.den == 0 {
+		return Exact{}
+	}
+	if den, ok := mul64(r.den, 1000); ok {
+		return Ratio(r.num, den)
+	}
+	return Ratio(r.num, r.den).Times(Ratio(1, 1000))
+}
+
+// Thousandths gives the rate as whole thousandths of s/d; ok is false if it is none, or not read.
+func (r Rate) Thousandths() (milli int64, ok bool) {
+	if r.den == 0 || r.num%r.den != 0 {
+		return 0, false
+	}
+	return r.num / r.den, true
+}
+
+// Decimal prints the rate in s/d with so many decimals, half to even; empty if not read.
+func (r Rate) Decimal(places int) string {
+	if r.den == 0 {
+		return ""
+	}
+	return r.Exact().Decimal(places)
+}
