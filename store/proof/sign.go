@@ -143,7 +143,7 @@ func (j jwk) private() (Key, error) {
 		return Key{}, ErrKey
 	}
 	key := Key{ed25519.NewKeyFromSeed(d)}
-	if key.Public().JWK().X != j.X {
+	if key.Public().form().X != j.X {
 		return Key{}, fmt.Errorf("x does not belong to d: %w", ErrKey)
 	}
 	return key, nil
@@ -170,13 +170,9 @@ func (k Key) PEM() []byte {
 // JWK gives the private key as JSON (RFC 8037 A.1). Whoever has it can sign in the
 // laboratory's name.
 func (k Key) JWK() []byte {
-	form := k.Public().JWK()
+	form := k.Public().form()
 	form.D = b64.EncodeToString(k.private.Seed())
-	raw, err := Canonical(form)
-	if err != nil {
-		panic(err) // a fixed form of ASCII strings
-	}
-	return raw
+	return form.json()
 }
 
 // Format prints the key's name whatever the verb, so that no log ever holds the key.
@@ -196,11 +192,7 @@ func (p PublicKey) IsZero() bool { return p.public == nil }
 
 // ID is the RFC 7638 thumbprint of the key: base64url of the SHA-256 of its canonical JWK.
 func (p PublicKey) ID() string {
-	raw, err := Canonical(p.JWK())
-	if err != nil {
-		panic(err) // a fixed form of ASCII strings
-	}
-	sum := sha256.Sum256(raw)
+	sum := sha256.Sum256(p.JWK())
 	return b64.EncodeToString(sum[:])
 }
 
@@ -213,9 +205,19 @@ func (p PublicKey) PEM() []byte {
 	return pem.EncodeToMemory(&pem.Block{Type: "PUBLIC KEY", Bytes: der})
 }
 
-// JWK gives the public key in the form of RFC 8037 2, ready to be written as JSON.
-func (p PublicKey) JWK() jwk {
+// JWK gives the public key as canonical JSON (RFC 8037 2) with the members RFC 7638 hashes.
+func (p PublicKey) JWK() []byte { return p.form().json() }
+
+func (p PublicKey) form() jwk {
 	return jwk{Kty: "OKP", Crv: "Ed25519", X: b64.EncodeToString(p.public)}
+}
+
+func (j jwk) json() []byte {
+	raw, err := Canonical(j)
+	if err != nil {
+		panic(err) // a fixed form of ASCII strings
+	}
+	return raw
 }
 
 // header is the protected header of every document signed here.
