@@ -14,7 +14,11 @@ import (
 
 const lockName = "ratehouse.lock"
 
-const lockText = "The private PostgreSQL of Ratehouse. While this file is locked, a running program uses this directory.\n"
+// What the lock file says, and by that whether the data may be thrown away.
+const (
+	lastingText   = "The private PostgreSQL of Ratehouse. While this file is locked, a running program uses this directory.\n"
+	throwawayText = "A throw-away PostgreSQL of Ratehouse's tests. Nothing in this directory is worth keeping.\n"
+)
 
 // claim checks the directory, makes it if it is missing, and takes it for the life of this process.
 func (c *Cluster) claim() error {
@@ -114,11 +118,29 @@ func (c *Cluster) takeLock() error {
 		return fmt.Errorf("data directory %s cannot be locked: %w", c.dir, err)
 	}
 	c.lock = f
-	if info, err := f.Stat(); err != nil || info.Size() > 0 {
+	return c.mark()
+}
+
+// mark writes into the lock file what kind of cluster this is, and refuses one of the other kind: a
+// test must not run on data worth keeping, nor a laboratory on a server that forgets.
+func (c *Cluster) mark() error {
+	said, err := os.ReadFile(c.lockFile())
+	if err != nil {
 		return err
 	}
-	_, err = f.WriteString(lockText)
-	return errors.Join(err, c.user.own(c.lockFile()))
+	mine := lastingText
+	if c.cfg.Throwaway {
+		mine = throwawayText
+	}
+	if len(said) == 0 {
+		_, err = c.lock.WriteString(mine)
+		return errors.Join(err, c.user.own(c.lockFile()))
+	}
+	if throwaway := string(said) == throwawayText; throwaway != c.cfg.Throwaway {
+		return fmt.Errorf("%s holds another kind of database (its %s says: %s); nothing in it was touched: choose another data directory",
+			c.dir, lockName, strings.TrimSpace(string(said)))
+	}
+	return nil
 }
 
 func (c *Cluster) release() {

@@ -61,19 +61,28 @@ func Start(ctx context.Context, cfg Config) (_ *Cluster, err error) {
 	if err = c.claim(); err != nil {
 		return nil, err
 	}
-	defer func() {
-		if err != nil {
-			c.release()
-		}
-	}()
+	err = c.run(ctx)
+	if err != nil && cfg.Throwaway && ctx.Err() == nil {
+		c.cfg.Logf("making the throw-away database anew: %v", err)
+		err = c.anew(ctx)
+	}
+	if err != nil {
+		c.release()
+		return nil, err
+	}
+	return c, nil
+}
+
+// run brings the claimed directory's server up, or leaves nothing running.
+func (c *Cluster) run(ctx context.Context) error {
 	for _, step := range []func(context.Context) error{
 		c.checkData, c.reapOrphan, c.openSocketDir, c.initialise, c.boot, c.ensureRoles,
 	} {
-		if err = step(ctx); err != nil {
-			return nil, errors.Join(err, c.abandon())
+		if err := step(ctx); err != nil {
+			return errors.Join(err, c.abandon())
 		}
 	}
-	return c, nil
+	return nil
 }
 
 // DSN is the connection string of a role and a database on this server, for any client on this

@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"os"
 	"syscall"
 	"time"
 )
@@ -50,12 +51,29 @@ func (c *Cluster) end(ctx context.Context) error {
 	return fmt.Errorf("the database server in %s (process %d) does not end", c.dir, c.cmd.Process.Pid)
 }
 
-// abandon undoes a Start that failed half-way.
+// abandon ends what a start that failed half-way left; the directory stays ours.
 func (c *Cluster) abandon() error {
-	if c.cmd == nil {
-		return c.closeSocketDir()
+	var err error
+	if c.cmd != nil {
+		c.mu.Lock()
+		c.stopping = true
+		c.mu.Unlock()
+		err = c.end(context.Background())
 	}
-	return c.Stop(context.Background())
+	return errors.Join(err, c.closeSocketDir())
+}
+
+// anew throws a throw-away cluster's data away and starts once more: without durability, a machine
+// that was switched off may have left it broken.
+func (c *Cluster) anew(ctx context.Context) error {
+	if err := c.reapOrphan(ctx); err != nil {
+		return err
+	}
+	if err := os.RemoveAll(c.dataDir()); err != nil {
+		return err
+	}
+	c.cmd, c.stopping, c.err, c.exited = nil, false, nil, make(chan struct{})
+	return c.run(ctx)
 }
 
 func gone(exited <-chan struct{}) bool {
