@@ -1,0 +1,4 @@
+package words
+
+// The QA lead's pages: batches, batch, rate sheet, trends.
+var ()

@@ -1,0 +1,4 @@
+package words
+
+// The technicians' pages: Today, intake, reading rounds, unloading.
+var ()

@@ -1,0 +1,4 @@
+package words
+
+// Set-up: accounts, programmes, calibres, depositors, the journal.
+var ()

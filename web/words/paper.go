@@ -1,0 +1,4 @@
+package words
+
+// Certificates, reports and day sheets.
+var ()
