@@ -143,8 +143,11 @@ func (c *Cluster) mark() error {
 	return nil
 }
 
+// release unlocks before it closes: a program just being started by another goroutine may still hold
+// a copy of the open file.
 func (c *Cluster) release() {
 	if c.lock != nil {
+		_ = syscall.Flock(int(c.lock.Fd()), syscall.LOCK_UN)
 		c.lock.Close()
 		c.lock = nil
 	}

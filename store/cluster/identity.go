@@ -32,8 +32,8 @@ func serverAccount(dir string) (account, error) {
 		}
 	}
 	for _, name := range []string{"postgres", "nobody"} {
-		if u, err := user.Lookup(name); err == nil {
-			return accountOf(u)
+		if a, err := ownerNamed(name); err == nil {
+			return a, nil
 		}
 	}
 	return account{}, errors.New("the database server does not run as root, and there is no account named postgres or nobody " +
@@ -51,6 +51,14 @@ func ownAccount() (account, error) {
 		a.groups = append(a.groups, uint32(g))
 	}
 	return a, err
+}
+
+func ownerNamed(name string) (account, error) {
+	u, err := user.Lookup(name)
+	if err != nil {
+		return account{}, err
+	}
+	return accountOf(u)
 }
 
 func accountOf(u *user.User) (account, error) {

@@ -37,7 +37,7 @@ func (c *Cluster) reapOrphan(ctx context.Context) error {
 	if err := c.outlive(ctx, postmaster); err != nil {
 		return err
 	}
-	if err := os.Remove(pidFile); err != nil {
+	if err := os.Remove(pidFile); err != nil && !errors.Is(err, fs.ErrNotExist) {
 		return err
 	}
 	return errors.Join(removeSockets(filepath.Join(c.dir, "run")), c.closeSocketDir())
@@ -59,11 +59,11 @@ func (c *Cluster) outlive(ctx context.Context, postmaster int) error {
 			return fmt.Errorf("server processes %v still use %s: end them and start again", left, c.dataDir())
 		case waited > orphanPatient && !harsh:
 			harsh = true
-			signal(left, syscall.SIGQUIT)
+			send(left, syscall.SIGQUIT)
 		case !asked:
 			asked = true
 			c.cfg.Logf("ending the database server that a killed program left (processes %v)", left)
-			signal([]int{postmaster}, syscall.SIGINT)
+			send([]int{postmaster}, syscall.SIGINT)
 		}
 		select {
 		case <-ctx.Done():
@@ -73,7 +73,7 @@ func (c *Cluster) outlive(ctx context.Context, postmaster int) error {
 	}
 }
 
-func signal(pids []int, s syscall.Signal) {
+func send(pids []int, s syscall.Signal) {
 	for _, pid := range pids {
 		if pid > 1 {
 			_ = syscall.Kill(pid, s) // gone already: that is what we want

@@ -45,6 +45,9 @@ func walk(abs string, who account) error {
 		case !info.IsDir():
 			return fmt.Errorf("%s is not a directory: choose another data directory", part)
 		case !who.may(info, 0o1):
+			if real, err := filepath.EvalSymlinks(part); err == nil {
+				part = real
+			}
 			return fmt.Errorf("%s cannot be entered by user %s, who runs the database server (mode %v, owner %s): "+
 				"allow it (chmod o+x %s) or choose another data directory", part, who.name, info.Mode(), nameOf(owner(info)), quoteShell(part))
 		}

@@ -11,8 +11,11 @@ import (
 
 const initLocale = "C.UTF-8"
 
-// dieWithParent makes the kernel send the server a fast shutdown when we die, even by SIGKILL.
-func dieWithParent(attr *syscall.SysProcAttr) { attr.Pdeathsig = syscall.SIGINT }
+// deathSignal is what the kernel sends the server when we die, even by SIGKILL: a fast shutdown. A
+// test turns it off.
+var deathSignal = syscall.SIGINT
+
+func dieWithParent(attr *syscall.SysProcAttr) { attr.Pdeathsig = deathSignal }
 
 // serverProcesses lists the PostgreSQL processes whose working directory is the data directory: the
 // postmaster and all its children have it.

@@ -198,7 +198,7 @@ func (c *checker) criteria() {
 		c.filled(where+".definition", k.Definition)
 		c.need(k.Decimals >= 0 && k.Decimals <= 9, where+".decimals", "%d is not 0 to 9", k.Decimals)
 		c.limits(where, k)
-		low, high, err := k.decides()
+		low, high, err := k.deciding()
 		if err != nil {
 			c.fault(where, "limit %v", err)
 			continue

@@ -108,9 +108,9 @@ func margin(v, low, high *big.Rat) *big.Rat {
 	return m
 }
 
-// decides gives the limits that decide a criterion: the acceptance limits of a guarded rule
+// deciding gives the limits that decide a criterion: the acceptance limits of a guarded rule
 // where they are given, else the programme's. Nil means none.
-func (c Criterion) decides() (low, high *big.Rat, err error) {
+func (c Criterion) deciding() (low, high *big.Rat, err error) {
 	texts := [2]Decimal{c.Min, c.Max}
 	if c.AcceptMin != "" {
 		texts[0] = c.AcceptMin
@@ -133,7 +133,7 @@ func (c Criterion) WithValue(v *big.Rat, verdict Verdict) (Criterion, error) {
 	if v == nil {
 		return c, nil
 	}
-	low, high, err := c.decides()
+	low, high, err := c.deciding()
 	if err != nil {
 		return c, fmt.Errorf("criterion %s: limit %w", c.Symbol, err)
 	}

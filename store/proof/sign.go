@@ -6,7 +6,6 @@ import (
 	"crypto/sha256"
 	"crypto/x509"
 	"encoding/base64"
-	"encoding/json"
 	"encoding/pem"
 	"errors"
 	"fmt"
@@ -60,7 +59,6 @@ type jwk struct {
 	Crv string `json:"crv"`
 	D   string `json:"d,omitempty"`
 	X   string `json:"x"`
-	Kid string `json:"kid,omitempty"`
 }
 
 // GenerateKey makes a key from the system's random source.
@@ -119,14 +117,26 @@ func keyForm(text []byte) (*pem.Block, jwk, error) {
 		}
 		return block, jwk{}, nil
 	}
-	var form jwk
-	if _, err := parseJSON(text); err != nil { // two keys of one name
-		return nil, jwk{}, fmt.Errorf("%w: %w", ErrKey, err)
+	form, err := readJWK(text)
+	return nil, form, err
+}
+
+// readJWK reads the members this package needs, by their exact names, and skips all others.
+func readJWK(text []byte) (jwk, error) {
+	v, err := parseJSON(text)
+	if err != nil {
+		return jwk{}, fmt.Errorf("%w: %w", ErrKey, err)
 	}
-	if err := json.Unmarshal(text, &form); err != nil || form.Kty != "OKP" || form.Crv != "Ed25519" {
-		return nil, jwk{}, ErrKey
+	members, _ := v.(map[string]any)
+	member := func(name string) string {
+		s, _ := members[name].(string)
+		return s
 	}
-	return nil, form, nil
+	form := jwk{Kty: member("kty"), Crv: member("crv"), D: member("d"), X: member("x")}
+	if form.Kty != "OKP" || form.Crv != "Ed25519" {
+		return jwk{}, ErrKey
+	}
+	return form, nil
 }
 
 func (j jwk) public() (PublicKey, error) {

@@ -1,0 +1,5 @@
+package cluster
+
+const diesWithParent = true
+
+func leaveServer() { deathSignal = 0 }

@@ -1,0 +1,7 @@
+//go:build !linux
+
+package cluster
+
+const diesWithParent = false
+
+func leaveServer() {}
