@@ -70,3 +70,13 @@ func (p *Printer) Fault(code string, args map[string]string) string {
 	}
 	return strings.NewReplacer(pairs...).Replace(form)
 }
+
+// Refusal is the sentence for a refusal, to be said later.
+func Refusal(code string, args map[string]string) Text { return refusal{code, args} }
+
+type refusal struct {
+	code string
+	args map[string]string
+}
+
+func (r refusal) text(p *Printer) string { return p.Fault(r.code, r.args) }

@@ -113,3 +113,6 @@ var (
 	FaultsTitle = plural("{n} entry needs a look", "{n} entries need a look", "{n} saisie à revoir", "{n} saisies à revoir", "{n} Eingabe bitte prüfen", "{n} Eingaben bitte prüfen")
 	FaultLine   = say2("{field}: {why}", "{field} : {why}", "{field}: {why}")
 )
+
+// Product is the program's name, the same in every language.
+const Product = Raw("Ratehouse")
