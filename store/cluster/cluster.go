@@ -59,6 +59,7 @@ func Start(ctx context.Context, cfg Config) (_ *Cluster, err error) {
 		return nil, err
 	}
 	if err = c.claim(); err != nil {
+		c.release()
 		return nil, err
 	}
 	err = c.run(ctx)

@@ -65,49 +65,62 @@ func TestForeignDirectory(t *testing.T) {
 	}
 }
 
-// A database made by another major version is refused, not touched, and works again with its own.
-func TestOtherMajorVersion(t *testing.T) {
+// A database made by another major version, half a database, a broken one, and a lasting one asked
+// for as throw-away are refused and not touched; put right, it works again.
+func TestRefusedData(t *testing.T) {
 	t.Parallel()
 	dir := filepath.Join(tempDir(t), "db")
 	c := start(t, Config{Dir: dir})
 	run(t, c, "CREATE TABLE kept AS SELECT 7 AS n")
 	stop(t, c)
-	version := filepath.Join(dir, "data", "PG_VERSION")
+	version, control := filepath.Join(dir, "data", "PG_VERSION"), filepath.Join(dir, "data", "global", "pg_control")
 	own, err := os.ReadFile(version)
 	if err != nil {
 		t.Fatal(err)
 	}
-	put := func(text []byte) {
-		if err := os.WriteFile(version, text, 0o600); err != nil {
-			t.Fatal(err)
+	for _, c := range []struct {
+		file  string
+		text  string
+		cfg   Config
+		words []string
+	}{
+		{version, "9\n", Config{}, []string{"made by PostgreSQL 9", "PostgreSQL " + strings.TrimSpace(string(own)), "nothing in it was touched", "PG_BIN"}},
+		{version, "", Config{}, []string{"not a PostgreSQL database", "nothing in it was touched"}},
+		{control, "", Config{}, []string{"pg_control"}},
+		{"", "", Config{Throwaway: true}, []string{"another kind", "nothing in it was touched"}},
+	} {
+		putBack := spoil(t, c.file, c.text)
+		before := listing(t, dir)
+		c.cfg.Dir = dir
+		refused(t, c.cfg, append(c.words, dir)...)
+		if after := listing(t, dir); after != before {
+			t.Errorf("%v: touched:\n%s\n---\n%s", c.words, before, after)
 		}
+		putBack()
 	}
-	put([]byte("9\n"))
-	before := listing(t, dir)
-	refused(t, Config{Dir: dir}, "made by PostgreSQL 9", "PostgreSQL "+strings.TrimSpace(string(own)), "nothing in it was touched", "PG_BIN")
-	if after := listing(t, dir); after != before {
-		t.Errorf("touched:\n%s\n---\n%s", before, after)
-	}
-	put(own)
 	if n := ask[int](t, start(t, Config{Dir: dir}), "SELECT n FROM kept"); n != 7 {
 		t.Errorf("kept %d", n)
 	}
 }
 
-// A data folder of ours that holds no database is not overwritten.
-func TestHalfDatabase(t *testing.T) {
-	t.Parallel()
-	dir := filepath.Join(tempDir(t), "db")
-	c := start(t, Config{Dir: dir, Throwaway: false})
-	stop(t, c)
-	if err := os.Remove(filepath.Join(dir, "data", "PG_VERSION")); err != nil {
-		t.Fatal(err)
+// spoil gives the file another text, or puts it aside when the text is empty.
+func spoil(t *testing.T, file, text string) (putBack func()) {
+	t.Helper()
+	if file == "" {
+		return func() {}
 	}
-	before := listing(t, dir)
-	refused(t, Config{Dir: dir}, "not a PostgreSQL database", "nothing in it was touched")
-	if after := listing(t, dir); after != before {
-		t.Errorf("touched:\n%s\n---\n%s", before, after)
+	must := func(err error) {
+		t.Helper()
+		if err != nil {
+			t.Fatal(err)
+		}
 	}
+	aside := filepath.Join(tempDir(t), "aside")
+	must(os.Rename(file, aside))
+	if text != "" {
+		must(os.WriteFile(file, []byte(text), 0o600))
+	}
+	return func() { must(os.Rename(aside, file)) }
 }
 
 // The component that blocks the way is named, wherever it stands in the path.
