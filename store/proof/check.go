@@ -241,29 +241,33 @@ func (c *checker) judged(where string, k Criterion, low, high *big.Rat) {
 		return
 	}
 	c.need(k.Verdict == decided(v, low, high), where+".verdict", "%q contradicts value %s between limits", k.Verdict, k.Value)
-	if c.rounded(where+".printed", k.Printed, v, k.Decimals) {
-		shown, _, _ := k.Printed.rat()
+	if shown := c.rounded(where+".printed", k.Printed, v, k.Decimals); shown != nil {
 		c.need(within(shown, low, high) == within(v, low, high), where+".printed", "%s contradicts the verdict", k.Printed)
 	}
 	m := margin(v, low, high)
 	if m == nil {
 		c.need(k.Margin == "", where+".margin", "without limits")
-	} else if c.rounded(where+".margin", k.Margin, m, k.Decimals) {
-		shown, _, _ := k.Margin.rat()
+	} else if shown := c.rounded(where+".margin", k.Margin, m, k.Decimals); shown != nil {
 		c.need((shown.Sign() < 0) == (m.Sign() < 0), where+".margin", "%s contradicts the verdict", k.Margin)
 	}
 }
 
-// rounded wants text to be v rounded half to even, with at least that many digits.
-func (c *checker) rounded(where string, text Decimal, v *big.Rat, decimals int) bool {
-	_, digits, err := text.rat()
+// rounded wants text to be v rounded half to even, with at least that many digits, or v itself
+// as p/q, and gives the number shown.
+func (c *checker) rounded(where string, text Decimal, v *big.Rat, decimals int) *big.Rat {
+	if !v.IsInt() && string(text) == v.String() {
+		return v
+	}
+	shown, digits, err := text.rat()
 	if err != nil {
 		c.fault(where, "%v", err)
-		return false
+		return nil
 	}
-	ok := digits >= decimals && Rounded(v, digits) == text
-	c.need(ok, where, "%s is not %s rounded to at least %d decimals", text, v, decimals)
-	return ok
+	if digits < decimals || Rounded(v, digits) != text {
+		c.fault(where, "%s is not %s rounded to at least %d decimals", text, v, decimals)
+		return nil
+	}
+	return shown
 }
 
 func undecided(limited bool) Verdict {

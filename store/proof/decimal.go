@@ -78,15 +78,18 @@ func Rounded(v *big.Rat, decimals int) Decimal {
 
 // Printed rounds v to the given digits, and to as many more as are needed for the printed
 // number to lie on the same side of its limits as v itself: a value of 6.04 that fails a limit
-// of 6 is printed 6.04, never 6.0. Nil limits are none.
+// of 6 is printed 6.04, never 6.0. A number that no decimal can tell from its limit, such as 2/3
+// on a limit of 2/3, is printed as p/q. Nil limits are none.
 func Printed(v *big.Rat, decimals int, low, high *big.Rat) Decimal {
-	for ; ; decimals++ {
-		d := Rounded(v, decimals)
+	const most = 9 // further digits; limits are decimals of a few places or exact fractions
+	for places := decimals; places <= decimals+most; places++ {
+		d := Rounded(v, places)
 		shown, _ := new(big.Rat).SetString(string(d))
 		if within(shown, low, high) == within(v, low, high) {
 			return d
 		}
 	}
+	return Decimal(v.RatString())
 }
 
 // within tells whether v lies between the limits, which belong to the permitted range.

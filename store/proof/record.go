@@ -324,13 +324,13 @@ type Criterion struct {
 	Unit     string  `json:"unit"`
 	Decimals int     `json:"decimals"` // digits after the point that the programme prints
 	Value    Exact   `json:"value"`    // exact; empty = undecided
-	Printed  Decimal `json:"printed"`  // Value rounded half to even, as printed
+	Printed  Decimal `json:"printed"`  // Value rounded half to even, as printed (see Printed)
 	Min      Decimal `json:"min"`      // limits as the programme writes them, decimal or p/q; empty = none
 	Max      Decimal `json:"max"`
 	// AcceptMin and AcceptMax are the limits drawn in by the guard band, only with RuleGuarded.
 	AcceptMin  Decimal `json:"accept_min"`
 	AcceptMax  Decimal `json:"accept_max"`
-	Margin     Decimal `json:"margin"` // distance to the nearer limit, negative = outside
+	Margin     Decimal `json:"margin"` // distance to the nearer deciding limit, rounded likewise; negative = outside
 	Verdict    Verdict `json:"verdict"`
 	Definition string  `json:"definition"` // code of the sentence that defines it
 }

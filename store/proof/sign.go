@@ -47,8 +47,14 @@ func decode64(s string) ([]byte, error) {
 	return raw, nil
 }
 
-// Key is a private Ed25519 key. It never prints itself.
-type Key struct{ private ed25519.PrivateKey }
+// Key is a private Ed25519 key. It never prints itself: the bytes stand behind a function,
+// because fmt walks the unexported fields of other types without asking Format, and follows
+// a pointer there when the verb does not fit (%s).
+type Key struct{ private func() ed25519.PrivateKey }
+
+func newKey(private ed25519.PrivateKey) Key {
+	return Key{func() ed25519.PrivateKey { return private }}
+}
 
 // PublicKey is the half of a Key that checks signatures.
 type PublicKey struct{ public ed25519.PublicKey }
@@ -64,7 +70,10 @@ type jwk struct {
 // GenerateKey makes a key from the system's random source.
 func GenerateKey() (Key, error) {
 	_, private, err := ed25519.GenerateKey(nil)
-	return Key{private}, err
+	if err != nil {
+		return Key{}, err
+	}
+	return newKey(private), nil
 }
 
 // ParseKey reads a private key: PEM with PKCS #8, or a JWK. It fails with ErrKey.
@@ -83,7 +92,7 @@ func ParseKey(text []byte) (Key, error) {
 	if err != nil || !ok {
 		return Key{}, ErrKey
 	}
-	return Key{private}, nil
+	return newKey(private), nil
 }
 
 // ParsePublicKey reads a public key: PEM (SubjectPublicKeyInfo) or a JWK. It fails with ErrKey,
@@ -152,7 +161,7 @@ func (j jwk) private() (Key, error) {
 	if err != nil || len(d) != ed25519.SeedSize {
 		return Key{}, ErrKey
 	}
-	key := Key{ed25519.NewKeyFromSeed(d)}
+	key := newKey(ed25519.NewKeyFromSeed(d))
 	if key.Public().form().X != j.X {
 		return Key{}, fmt.Errorf("x does not belong to d: %w", ErrKey)
 	}
@@ -163,14 +172,14 @@ func (j jwk) private() (Key, error) {
 func (k Key) IsZero() bool { return k.private == nil }
 
 // Public gives the public half.
-func (k Key) Public() PublicKey { return PublicKey{k.private.Public().(ed25519.PublicKey)} }
+func (k Key) Public() PublicKey { return PublicKey{k.private().Public().(ed25519.PublicKey)} }
 
 // ID is the key's name: the thumbprint of its public half.
 func (k Key) ID() string { return k.Public().ID() }
 
 // PEM gives the private key as PKCS #8. Whoever has it can sign in the laboratory's name.
 func (k Key) PEM() []byte {
-	der, err := x509.MarshalPKCS8PrivateKey(k.private)
+	der, err := x509.MarshalPKCS8PrivateKey(k.private())
 	if err != nil {
 		panic(err) // only for key types it does not know
 	}
@@ -181,7 +190,7 @@ func (k Key) PEM() []byte {
 // laboratory's name.
 func (k Key) JWK() []byte {
 	form := k.Public().form()
-	form.D = b64.EncodeToString(k.private.Seed())
+	form.D = b64.EncodeToString(k.private().Seed())
 	return form.json()
 }
 
@@ -251,7 +260,7 @@ func sign(key Key, h header, payload []byte) (string, error) {
 		return "", err
 	}
 	signed := b64.EncodeToString(raw) + "." + b64.EncodeToString(payload)
-	return signed + "." + b64.EncodeToString(ed25519.Sign(key.private, []byte(signed))), nil
+	return signed + "." + b64.EncodeToString(ed25519.Sign(key.private(), []byte(signed))), nil
 }
 
 // Verify checks a compact JWS over the bytes as received and gives its payload. The algorithm

@@ -21,9 +21,11 @@ type Series struct {
 	FoundNth []int16
 	LeftNth  []int16
 	Ended    int16
+	Released bool // a paper hangs on it
 }
 
-const seriesColumns = `s.batch, s.no, m.serial, s.rate, s.found, s.as_left, s.at_s, s.code, s.rate_nth, s.found_nth, s.left_nth, s.ended`
+const seriesColumns = `s.batch, s.no, m.serial, s.rate, s.found, s.as_left, s.at_s, s.code, s.rate_nth, s.found_nth, s.left_nth, s.ended,
+	EXISTS (SELECT FROM certificate p WHERE p.batch = s.batch AND p.no = s.no AND NOT EXISTS (SELECT FROM revocation v WHERE v.number = p.number)) AS released`
 
 // LockSeries queues the look-up of movements by batch code and serial, locked in key order so that
 // two saves never wait for each other crosswise.
@@ -80,16 +82,17 @@ func ReadingsByID(b *pgx.Batch, into *[]SeenReading, ids []uuid.UUID) {
 	list(b, into, `SELECT `+seenColumns+seenFrom+`WHERE r.id = ANY ($1::uuid[])`, ids)
 }
 
-// Newest queues the newest reading of every step of the given movements: what a conflict shows,
+// Newest queues the newest reading of the cells asked for, each by step or (step -1) by day: what a conflict shows,
 // and who may correct without giving a reason.
-func Newest(b *pgx.Batch, into *[]SeenReading, site int16, codes, serials []string, steps []int16) {
+func Newest(b *pgx.Batch, into *[]SeenReading, site int16, codes, serials []string, steps, days []int16) {
 	list(b, into, `SELECT DISTINCT ON (r.batch, r.no, r.step, r.kind) `+seenColumns+`
-		FROM unnest($2::text[], $3::text[], $4::smallint[]) w(code, serial, step)
+		FROM unnest($2::text[], $3::text[], $4::smallint[], $5::smallint[]) w(code, serial, step, day)
 		JOIN batch b ON b.site = $1 AND b.code = w.code
 		JOIN movement m ON m.batch = b.id AND m.serial = w.serial
-		JOIN reading r ON r.batch = m.batch AND r.no = m.no AND r.step = w.step
+		JOIN reading r ON r.batch = m.batch AND r.no = m.no
+			AND r.step = CASE WHEN w.step >= 0 THEN w.step ELSE (SELECT max(t.step) FROM step t WHERE t.batch = m.batch AND t.day = w.day) END
 		JOIN account a ON a.id = r.read_by JOIN account e ON e.id = r.entered_by
-		ORDER BY r.batch, r.no, r.step, r.kind, r.nth DESC`, site, codes, serials, steps)
+		ORDER BY r.batch, r.no, r.step, r.kind, r.nth DESC`, site, codes, serials, steps, days)
 }
 
 // ReadingsOf queues all readings of one movement, in the order of the trial.
