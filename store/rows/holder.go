@@ -65,3 +65,8 @@ func LastHolder(b *pgx.Batch, into *int, site int16, kind string) {
 func QueueHolder(b *pgx.Batch, site int16, h Holder, act uuid.UUID) {
 	b.Queue(`INSERT INTO holder (id, site, code, type, act) VALUES ($1, $2, $3, $4, $5)`, h.ID, site, h.Code, h.Type, act)
 }
+
+// QueueHolderTypes queues all holder types.
+func QueueHolderTypes(b *pgx.Batch, into *[]HolderType, site int16) {
+	list(b, into, `SELECT `+holderTypeColumns+` FROM holder_type WHERE site = $1 ORDER BY code`, site)
+}

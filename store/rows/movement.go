@@ -115,3 +115,14 @@ func QueueRemark(b *pgx.Batch, batch uuid.UUID, r Remark, act uuid.UUID) {
 func QueueRemarkState(b *pgx.Batch, id uuid.UUID, nth int16, state, words string, at time.Time, act uuid.UUID) {
 	b.Queue(`INSERT INTO remark_state (remark, nth, state, words, at, act) VALUES ($1, $2, $3, $4, $5, $6)`, id, nth, state, words, at, act)
 }
+
+// Neighbours are the serials before and after a movement in its batch.
+type Neighbours struct{ Before, Next *string }
+
+// NeighboursOf queues the movements beside one.
+func NeighboursOf(b *pgx.Batch, into *Neighbours, site int16, batch, serial string) {
+	b.Queue(`SELECT (SELECT serial FROM movement x WHERE x.batch = m.batch AND x.no < m.no ORDER BY x.no DESC LIMIT 1),
+			(SELECT serial FROM movement x WHERE x.batch = m.batch AND x.no > m.no ORDER BY x.no LIMIT 1)
+		FROM (SELECT batch, no FROM movement WHERE batch = (SELECT id FROM batch WHERE site = $1 AND code = $2) AND serial = $3
+			UNION ALL SELECT NULL, NULL LIMIT 1) m`, site, batch, serial).QueryRow(func(r pgx.Row) error { return r.Scan(&into.Before, &into.Next) })
+}

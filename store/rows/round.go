@@ -64,3 +64,17 @@ const readColumns = `SELECT s.batch, (g.i - 1)::smallint AS step,
 		max(b.starts_at + make_interval(secs => s.at_s[g.i])) AS last_at
 	FROM series s JOIN batch b ON b.id = s.batch
 	CROSS JOIN LATERAL (SELECT i FROM generate_series(1, (SELECT count(*)::int FROM step t WHERE t.batch = s.batch)) i) g `
+
+// CellReader says who read and who typed the newest entry of a movement at a step.
+type CellReader struct {
+	No        int16
+	ReadBy    uuid.UUID
+	EnteredBy uuid.UUID
+}
+
+// ReadersOf queues who read what stands at one step of a batch.
+func ReadersOf(b *pgx.Batch, into *[]CellReader, site int16, batch string, step int16) {
+	list(b, into, `SELECT DISTINCT ON (r.no) r.no, r.read_by, r.entered_by FROM reading r
+		WHERE r.batch = (SELECT id FROM batch WHERE site = $1 AND code = $2) AND r.step = $3 AND r.kind IN (1, 2)
+		ORDER BY r.no, r.nth DESC`, site, batch, step)
+}
