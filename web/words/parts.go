@@ -34,7 +34,7 @@ var (
 	MeanVariation     = say("Mean variation", "Variation moyenne des marches", "Mittlere Gangabweichung")
 	GreatestVariation = say("Greatest variation", "Plus grande variation des marches", "Größte Gangabweichung")
 	FlatAndHanging    = say("Vertical less horizontal", "Différence plat-pendu", "Hängend weniger flach")
-	GreatestDeviation = say("Greatest deviation", "Plus grand écart des marches", "Größte Abweichung vom mittleren Gang")
+	GreatestDeviation = say("Greatest deviation", "Plus grand écart des marches", "Größte Abweichung")
 	ByTemperature     = say("Variation with temperature", "Variation avec la température", "Gangänderung je Grad")
 	Resumption        = say("Resumption of rate", "Reprise de marche", "Wiederaufnahme des Ganges")
 
@@ -57,7 +57,7 @@ var (
 	PlaceLook    = say("read again", "relever encore une fois", "noch einmal ablesen")
 	PlaceNow     = say("now", "ici", "jetzt")
 	HolderSeen   = say2("Holder {n}, {places}", "Porte-mouvements {n}, {places}", "Werkhalter {n}, {places}").unsure(FR, DE)
-	Places       = plural("{n} place", "{n} places", "{n} emplacement", "{n} emplacements", "{n} Platz", "{n} Plätze")
+	HolderPlaces = plural("{n} place", "{n} places", "{n} emplacement", "{n} emplacements", "{n} Platz", "{n} Plätze")
 	PlaceSays    = say3("Place {n}, {serial}: {state}", "Emplacement {n}, {serial} : {state}", "Platz {n}, {serial}: {state}")
 	PlaceNothing = say2("Place {n}: {state}", "Emplacement {n} : {state}", "Platz {n}: {state}")
 )
