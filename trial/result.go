@@ -49,6 +49,22 @@ type Result struct {
 	wide    bool // some value refers to kept readings
 }
 
+// ready shapes the result for a judge. Denominators of whole-number values are set once here, so
+// that the fast path writes numerators alone.
+func (r *Result) ready(j *Judge) {
+	if r.judge == j && !r.wide && len(r.Values) == len(j.crits) {
+		return
+	}
+	if cap(r.Values) < len(j.crits) {
+		r.Values = make([]Value, len(j.crits))
+	}
+	r.Values = r.Values[:len(j.crits)]
+	for i := range r.Values {
+		r.Values[i] = Value{Exact: Exact{den: 1000 * j.crits[i].q}}
+	}
+	r.judge, r.wide = j, false
+}
+
 // Failed lists the symbols decided outside, in the programme's order.
 func (r *Result) Failed() []string {
 	return r.symbols(func(v *Value) bool { return v.Outcome == Outside })

@@ -1,0 +1,292 @@
+package trial
+
+import (
+	"fmt"
+	"slices"
+)
+
+// Fault is one thing wrong with a programme: where, as a path in its file form, and what, as a
+// code with arguments (web/words says it in other languages).
+type Fault struct {
+	Path string // such as criteria[2].formula.days
+	Code string
+	Args []string
+}
+
+// Error is the English text: "criteria[2].formula.days: day 16 is not a day of the programme".
+func (f *Fault) Error() string {
+	text, ok := faultTexts[f.Code]
+	if !ok {
+		text = f.Code
+	}
+	args := make([]any, len(f.Args))
+	for i, a := range f.Args {
+		args[i] = a
+	}
+	return f.Path + ": " + fmt.Sprintf(text, args...)
+}
+
+// Is lets errors.Is(err, ErrNotBuilt) find what is named but not computed yet.
+func (f *Fault) Is(target error) bool { return target == ErrNotBuilt && f.Code == "not_built" }
+
+// faultTexts says the codes in English for the command line.
+var faultTexts = map[string]string{
+	"missing":          "is missing",
+	"unknown_day":      "day %s is not a day of the programme",
+	"repeated":         "%s appears twice",
+	"empty":            "is empty",
+	"same_day":         "both days of a pair are day %s",
+	"same_temperature": "both sides have the same mean temperature, so there is nothing to divide by",
+	"unknown_kind":     "%s is not a kind of formula",
+	"unknown_value":    "%s is not allowed here",
+	"unknown_category": "category %s is not one of the programme's",
+	"crossed":          "the lower limit %s is above the upper limit %s",
+	"day_order":        "days must be numbered 1, 2, 3, ... in order; found %s",
+	"position":         "%s is not a position (CH, FH, 3H, 6H, 9H, 12H)",
+	"out_of_range":     "%s is outside what is allowed (%s to %s)",
+	"not_built":        "%s: not built yet",
+}
+
+func fault(path, code string, args ...string) *Fault { return &Fault{path, code, args} }
+
+// Check finds the first fault of the programme, in the order of its file form; nil if there is
+// none. Formulas this version cannot compute yet are no fault here: NewJudge names them.
+func (p *Programme) Check() error {
+	for _, check := range []func() *Fault{p.checkHead, p.checkDays, p.checkRules, p.checkCategories, p.checkCriteria} {
+		if f := check(); f != nil {
+			return f
+		}
+	}
+	return nil
+}
+
+func (p *Programme) checkHead() *Fault {
+	for _, field := range []struct{ path, value string }{{"code", p.Code}, {"version", p.Version}, {"title", p.Title}} {
+		if field.value == "" {
+			return fault(field.path, "missing")
+		}
+	}
+	if p.Measurand != AsPerformed && p.Measurand != AtNominal {
+		return fault("measurand", "unknown_value", string(p.Measurand))
+	}
+	return nil
+}
+
+// mostDays bounds a programme: a year and a day.
+const mostDays = 366
+
+func (p *Programme) checkDays() *Fault {
+	if len(p.Days) == 0 {
+		return fault("days", "empty")
+	}
+	if len(p.Days) > mostDays {
+		return fault("days", "out_of_range", fmt.Sprint(len(p.Days)), "1", fmt.Sprint(mostDays))
+	}
+	for i, d := range p.Days {
+		path := fmt.Sprintf("days[%d]", i)
+		if d.N != i+1 {
+			return fault(path+".day", "day_order", fmt.Sprint(d.N))
+		}
+		if f := checkPlace(path, d.Position, d.TemperatureC); f != nil {
+			return f
+		}
+	}
+	if p.Conditioning.Position == "" {
+		return checkPlace("conditioning", CH, p.Conditioning.TemperatureC)
+	}
+	return checkPlace("conditioning", p.Conditioning.Position, p.Conditioning.TemperatureC)
+}
+
+func checkPlace(path string, pos Position, celsius Milli) *Fault {
+	if !slices.Contains(Positions(), pos) {
+		return fault(path+".position", "position", string(pos))
+	}
+	if celsius < -100_000 || celsius > 100_000 {
+		return fault(path+".temperature_c", "out_of_range", celsius.String(), "-100", "100")
+	}
+	return nil
+}
+
+func (p *Programme) checkRules() *Fault {
+	if s := p.Reading.IntervalS; s < 1 || s > 30*SecondsPerDay {
+		return fault("reading.interval_s", "out_of_range", fmt.Sprint(s), "1", fmt.Sprint(30*SecondsPerDay))
+	}
+	if p.Reading.ToleranceS < 0 || p.Reading.ToleranceS >= p.Reading.IntervalS {
+		return fault("reading.tolerance_s", "out_of_range", fmt.Sprint(p.Reading.ToleranceS), "0", fmt.Sprint(p.Reading.IntervalS-1))
+	}
+	if p.Reading.SecondLook.Then != MedianOfThree {
+		return fault("reading.second_look.then", "unknown_value", p.Reading.SecondLook.Then)
+	}
+	if p.Reading.SecondLook.Agree < 0 {
+		return fault("reading.second_look.agree", "out_of_range", p.Reading.SecondLook.Agree.String(), "0", "60")
+	}
+	for i, group := range p.Recovery.Groups {
+		if f := p.checkDayList(fmt.Sprintf("recovery.groups[%d]", i), group); f != nil {
+			return f
+		}
+	}
+	if p.Recovery.MaxTotalDays != 0 && p.Recovery.MaxTotalDays < len(p.Days) {
+		return fault("recovery.max_total_days", "out_of_range", fmt.Sprint(p.Recovery.MaxTotalDays), fmt.Sprint(len(p.Days)), fmt.Sprint(2*mostDays))
+	}
+	if p.Decision.Rule != Simple && p.Decision.Rule != Guarded {
+		return fault("decision.rule", "unknown_value", string(p.Decision.Rule))
+	}
+	return nil
+}
+
+func (p *Programme) checkCategories() *Fault {
+	if len(p.Categories) == 0 {
+		return fault("categories", "empty")
+	}
+	seen := map[string]bool{}
+	for i, c := range p.Categories {
+		path := fmt.Sprintf("categories[%d].code", i)
+		if c.Code == "" {
+			return fault(path, "missing")
+		}
+		if seen[c.Code] {
+			return fault(path, "repeated", c.Code)
+		}
+		seen[c.Code] = true
+	}
+	return nil
+}
+
+func (p *Programme) checkCriteria() *Fault {
+	if len(p.Criteria) == 0 {
+		return fault("criteria", "empty")
+	}
+	seen := map[string]bool{}
+	for i, c := range p.Criteria {
+		path := fmt.Sprintf("criteria[%d]", i)
+		if c.Symbol == "" {
+			return fault(path+".symbol", "missing")
+		}
+		if seen[c.Symbol] {
+			return fault(path+".symbol", "repeated", c.Symbol)
+		}
+		if c.Decimals < 0 || c.Decimals > 6 {
+			return fault(path+".decimals", "out_of_range", fmt.Sprint(c.Decimals), "0", "6")
+		}
+		if f := p.checkFormula(path+".formula", c.Formula, seen); f != nil {
+			return f
+		}
+		if f := p.checkLimits(path+".limits", c.Limits); f != nil {
+			return f
+		}
+		seen[c.Symbol] = true
+	}
+	return nil
+}
+
+func (p *Programme) checkLimits(path string, limits map[string]Limit) *Fault {
+	for _, code := range sortedKeys(limits) {
+		l := limits[code]
+		if !p.HasCategory(code) {
+			return fault(path+"."+code, "unknown_category", code)
+		}
+		if l.HasMin && l.HasMax && l.Min.Cmp(l.Max) > 0 {
+			return fault(path+"."+code, "crossed", l.Min.String(), l.Max.String())
+		}
+	}
+	return nil
+}
+
+func sortedKeys(m map[string]Limit) []string {
+	keys := make([]string, 0, len(m))
+	for k := range m {
+		keys = append(keys, k)
+	}
+	slices.Sort(keys)
+	return keys
+}
+
+// checkFormula checks the arguments of a formula; earlier holds the symbols of criteria before it.
+func (p *Programme) checkFormula(path string, f Formula, earlier map[string]bool) *Fault {
+	switch f.Kind {
+	case Mean, GreatestDeviation, RangeOf, StandardDeviation:
+		if f.Kind == StandardDeviation && f.Divisor != "n" && f.Divisor != "n-1" {
+			return fault(path+".divisor", "unknown_value", f.Divisor)
+		}
+		return p.checkDayList(path+".days", f.Days)
+	case MeanVariation, GreatestVariation:
+		return p.checkPairs(path+".pairs", f.Pairs)
+	case Difference, PerDegree:
+		if fl := p.checkDayList(path+".of", f.Of); fl != nil {
+			return fl
+		}
+		if fl := p.checkDayList(path+".from", f.From); fl != nil {
+			return fl
+		}
+		if f.Kind == PerDegree && p.meanTemperature(f.Of).Cmp(p.meanTemperature(f.From)) == 0 {
+			return fault(path, "same_temperature")
+		}
+		return nil
+	case PeriodRange, GreatestStep:
+		if len(f.Periods) < 2 {
+			return fault(path+".periods", "empty")
+		}
+		for i, period := range f.Periods {
+			if fl := p.checkDayList(fmt.Sprintf("%s.periods[%d]", path, i), period); fl != nil {
+				return fl
+			}
+		}
+		return nil
+	case WeightedSum:
+		if len(f.Terms) == 0 {
+			return fault(path+".terms", "empty")
+		}
+		for i, t := range f.Terms {
+			if !earlier[t.Symbol] {
+				return fault(fmt.Sprintf("%s.terms[%d].symbol", path, i), "unknown_value", t.Symbol)
+			}
+		}
+		return nil
+	}
+	return fault(path+".kind", "unknown_kind", string(f.Kind))
+}
+
+func (p *Programme) checkDayList(path string, days []int) *Fault {
+	if len(days) == 0 {
+		return fault(path, "empty")
+	}
+	seen := map[int]bool{}
+	for i, d := range days {
+		at := fmt.Sprintf("%s[%d]", path, i)
+		if _, ok := p.Day(d); !ok {
+			return fault(at, "unknown_day", fmt.Sprint(d))
+		}
+		if seen[d] {
+			return fault(at, "repeated", fmt.Sprint(d))
+		}
+		seen[d] = true
+	}
+	return nil
+}
+
+func (p *Programme) checkPairs(path string, pairs [][2]int) *Fault {
+	if len(pairs) == 0 {
+		return fault(path, "empty")
+	}
+	for i, pair := range pairs {
+		at := fmt.Sprintf("%s[%d]", path, i)
+		for _, d := range pair {
+			if _, ok := p.Day(d); !ok {
+				return fault(at, "unknown_day", fmt.Sprint(d))
+			}
+		}
+		if pair[0] == pair[1] {
+			return fault(at, "same_day", fmt.Sprint(pair[0]))
+		}
+	}
+	return nil
+}
+
+// meanTemperature is the mean nominal temperature of days, in degrees Celsius.
+func (p *Programme) meanTemperature(days []int) Exact {
+	var sum int64
+	for _, d := range days {
+		sum += int64(p.Days[d-1].TemperatureC)
+	}
+	return Ratio(sum, 1000*int64(len(days)))
+}
