@@ -8,7 +8,7 @@ import (
 )
 
 var (
-	decimalForm = regexp.MustCompile(`^-?(0|[1-9][0-9]{0,17})(\.[0-9]{1,18})?$`)
+	decimalForm = regexp.MustCompile(`^-?(0|[1-9][0-9]{0,17})(\.[0-9]{1,27})?$`)
 	ratioForm   = regexp.MustCompile(`^-?(0|[1-9][0-9]{0,39})/[1-9][0-9]{0,39}$`)
 )
 
@@ -81,7 +81,7 @@ func Rounded(v *big.Rat, decimals int) Decimal {
 // of 6 is printed 6.04, never 6.0. A number that no decimal can tell from its limit, such as 2/3
 // on a limit of 2/3, is printed as p/q. Nil limits are none.
 func Printed(v *big.Rat, decimals int, low, high *big.Rat) Decimal {
-	const most = 9 // further digits; limits are decimals of a few places or exact fractions
+	const most = 18 // further digits; limits are decimals of a few places or exact fractions
 	for places := decimals; places <= decimals+most; places++ {
 		d := Rounded(v, places)
 		shown, _ := new(big.Rat).SetString(string(d))
