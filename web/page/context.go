@@ -64,20 +64,25 @@ func From(ctx context.Context) *Context {
 // Of is From for a request.
 func Of(r *http.Request) *Context { return From(r.Context()) }
 
-// Start is the page the actor sees first.
+// Start is the page the actor sees first: the readers what is due, everybody else the batches. It is
+// the log-in while nobody is signed in.
 func (c *Context) Start() NavItem {
-	for _, n := range c.Nav {
-		return n
+	if !c.SignedIn || len(c.Nav) == 0 {
+		return NavItem{URL: LoginURL, Label: words.SignIn}
 	}
-	return NavItem{URL: LoginURL, Label: words.SignIn}
+	home := HomeOf(c.Actor.Role)
+	for _, n := range c.Nav {
+		if n.URL == home.URL {
+			return n
+		}
+	}
+	return c.Nav[0]
 }
 
 // HomeOf is the page that an account of this role sees first.
 func HomeOf(r store.Role) NavItem {
-	for _, n := range Navigation {
-		if r.May(n.Right) {
-			return n
-		}
+	if r == store.Technician {
+		return Navigation[0]
 	}
-	return NavItem{URL: LoginURL, Label: words.SignIn}
+	return Navigation[1]
 }
