@@ -207,13 +207,13 @@ CREATE TABLE holder_move (
   holder  uuid NOT NULL REFERENCES holder,
   nth     smallint NOT NULL,
   at      timestamptz NOT NULL,
-  into    uuid REFERENCES holder,
+  inside  uuid REFERENCES holder,
   place   smallint,
   retired boolean NOT NULL DEFAULT false,
   act     uuid NOT NULL REFERENCES act,
   PRIMARY KEY (holder, nth),
-  CONSTRAINT holder_move_whole CHECK (num_nonnulls(into, place) IN (0, 2)),
-  CONSTRAINT holder_move_nested_once CHECK (into IS DISTINCT FROM holder)
+  CONSTRAINT holder_move_whole CHECK (num_nonnulls(inside, place) IN (0, 2)),
+  CONSTRAINT holder_move_nested_once CHECK (inside IS DISTINCT FROM holder)
 );
 
 CREATE TABLE batch (
@@ -500,7 +500,7 @@ CREATE TABLE signing_key (
 );
 
 CREATE TABLE certificate (
-  number   code PRIMARY KEY,
+  number   text COLLATE "C" PRIMARY KEY,
   site     smallint NOT NULL,
   batch    uuid NOT NULL,
   no       smallint NOT NULL,
@@ -513,6 +513,7 @@ CREATE TABLE certificate (
   at       timestamptz NOT NULL,
   act      uuid NOT NULL REFERENCES act,
   FOREIGN KEY (batch, no) REFERENCES movement,
+  CONSTRAINT certificate_number_form CHECK (number ~ '^[A-Z0-9][A-Z0-9._-]{0,63}$'),
   CONSTRAINT certificate_kind CHECK (kind IN ('certificate', 'rejection')),
   CONSTRAINT certificate_replaced_once UNIQUE (replaces)
 );

@@ -21,6 +21,7 @@ type Config struct {
 	Clock  func() time.Time // nil: the system's
 	Engine string           // build of the engine, frozen on papers and carried by derived tables
 	Key    proof.Key        // signs papers; zero: this program cannot release
+	URL    string           // public base of the service, for the address on papers; may be empty
 	Conns  int32            // at most this many connections; 0: the driver's default
 	Dial   pgconn.DialFunc  // nil: the driver's; tests count round trips here
 }
@@ -48,6 +49,7 @@ type Lab struct {
 	site       int16
 	engine     string
 	key        proof.Key
+	url        string
 	house      House
 	argon      chan struct{} // 64 MiB each: only a few at once
 	mu         sync.RWMutex
@@ -75,7 +77,7 @@ func Open(ctx context.Context, c Config) (*Lab, error) {
 		return nil, fmt.Errorf("database pool: %w", err)
 	}
 	l := &Lab{
-		pool: pool, clock: c.Clock, engine: c.Engine, key: c.Key, argon: make(chan struct{}, 2),
+		pool: pool, clock: c.Clock, engine: c.Engine, key: c.Key, url: c.URL, argon: make(chan struct{}, 2),
 		programmes: map[[32]byte]*trial.Programme{}, wake: make(chan struct{}, 1),
 	}
 	if l.clock == nil {

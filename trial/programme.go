@@ -198,3 +198,17 @@ func (p *Programme) Criterion(symbol string) (c Criterion, ok bool) {
 	}
 	return p.Criteria[i], true
 }
+
+// AllDays lists the programme days whose rates enter the formula, each once, in order. A weighted
+// sum names no days of its own: it rests on the criteria before it.
+func (f Formula) AllDays() []int {
+	days := slices.Concat(f.Days, f.Of, f.From)
+	for _, p := range f.Pairs {
+		days = append(days, p[0], p[1])
+	}
+	for _, p := range f.Periods {
+		days = append(days, p...)
+	}
+	slices.Sort(days)
+	return slices.Compact(days)
+}

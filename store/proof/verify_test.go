@@ -246,21 +246,23 @@ func TestInstant(t *testing.T) {
 	}
 }
 
-// FuzzOpen: whatever is signed, opening it never panics, and what opens is its own canonical form.
+// FuzzOpen cuts a piece out of a right record and puts another text in, signed with the right
+// key: opening it never panics, and what opens is its own canonical form. (Fuzzing the whole
+// record instead spends its time making it smaller.)
 func FuzzOpen(f *testing.F) {
 	key := publishedTestKey(f)
-	for _, kind := range []Kind{KindCertificate, KindRejection} {
-		raw, err := golden(f, kind).Canonical()
-		if err != nil {
-			f.Fatal(err)
-		}
-		f.Add(raw)
-		f.Add(bytes.Replace(raw, []byte(`"value":"`), []byte(`"value":"1`), 1))
-		f.Add(bytes.Replace(raw, []byte(`null`), []byte(`"1/3"`), 3))
+	raw, err := golden(f, KindCertificate).Canonical()
+	if err != nil {
+		f.Fatal(err)
 	}
-	f.Add([]byte(fmt.Sprintf(`{"schema":%q,"schema_version":1}`, SchemaName)))
-	f.Fuzz(func(t *testing.T, payload []byte) {
-		jws, err := Sign(key, payload)
+	f.Add(uint16(0), uint16(0), "")
+	for _, c := range [][2]string{{`null`, `"1/3"`}, {`"-4"`, `"x"`}, {`"6H"`, `""`}, {`"Nadja Quill"`, `"\u00e9"`}, {`[]`, `null`}, {`1,`, `-1,`}} {
+		f.Add(uint16(bytes.Index(raw, []byte(c[0]))), uint16(len(c[0])), c[1])
+	}
+	f.Fuzz(func(t *testing.T, at, cut uint16, insert string) {
+		from := min(int(at), len(raw))
+		payload := fmt.Sprintf("%s%s%s", raw[:from], insert, raw[min(from+int(cut), len(raw)):])
+		jws, err := Sign(key, []byte(payload))
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -268,8 +270,8 @@ func FuzzOpen(f *testing.F) {
 		if err != nil {
 			return
 		}
-		if raw, err := r.Canonical(); err != nil || !bytes.Equal(raw, payload) {
-			t.Fatalf("%q opened as %q, %v", payload, raw, err)
+		if again, err := r.Canonical(); err != nil || string(again) != payload {
+			t.Fatalf("%q opened as %q, %v", payload, again, err)
 		}
 	})
 }

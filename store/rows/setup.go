@@ -132,3 +132,8 @@ func QueueProgramme(b *pgx.Batch, site int16, p Programme, act uuid.UUID) {
 	b.Queue(`INSERT INTO programme (site, hash, code, version, title, body, act) VALUES ($1, $2, $3, $4, $5, $6, $7)`,
 		site, p.Hash, p.Code, p.Version, p.Title, p.Body, act)
 }
+
+// CardOf queues the calibre of a batch with its card; into has one row or none.
+func CardOf(b *pgx.Batch, into *[]Calibre, site int16, batch string) {
+	list(b, into, calibreQuery+` AND c.id = (SELECT calibre FROM batch WHERE site = $1 AND code = $2)`, site, batch)
+}
