@@ -14,13 +14,20 @@ type dictionary struct {
 	sys   *rows
 	free  int       // variables below this index are free
 	basic []int32   // row to variable
-	outer []int32   // column to variable; -1: fixed at zero, never enters
+	outer []int32   // column to variable, or dropped, or loose
 	cells [][]int64 // row by column; the last len(atoms) columns are atoms
 	den   int64
 }
 
 // mostCell keeps 128-bit sums over cells · atoms from overflowing.
 const mostCell = 1 << 44
+
+// Columns that never enter. A dropped one is the slack of an equality, zero for good. A loose one
+// is a free variable that no slack hangs on any more; basic free variables still may.
+const (
+	dropped = -1
+	loose   = -2
+)
 
 // newDictionary builds a dictionary and solves it for the free variables; nil if its cells grow
 // too large, which calls for the slow solver.
@@ -61,7 +68,7 @@ func (d *dictionary) settleEqualities() bool {
 		if !d.pivot(i, col) {
 			return false
 		}
-		d.outer[col] = -1
+		d.outer[col] = dropped
 	}
 	return true
 }
@@ -97,7 +104,7 @@ func (d *dictionary) settleFree() bool {
 			}
 		}
 		if best < 0 {
-			d.outer[col] = -1
+			d.outer[col] = loose
 			continue
 		}
 		if !d.pivot(best, col) {
@@ -296,6 +303,9 @@ func (d *dictionary) extreme(v int32, sign int64, p *point) (value *big.Rat, bou
 	for {
 		col := -1
 		for c, w := range d.outer {
+			if w == loose && d.cells[row][c] != 0 {
+				return nil, false, true
+			}
 			if w >= 0 && sign*d.cells[row][c] > 0 && (col < 0 || w < d.outer[col]) {
 				col = c
 			}

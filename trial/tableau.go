@@ -54,7 +54,7 @@ func (t *tableau) settleRow(row int) {
 	for col, v := range t.outer {
 		if v >= 0 && int(v) < t.free && t.cells[row][col].Sign() != 0 {
 			t.pivot(row, col)
-			t.outer[col] = -1
+			t.outer[col] = dropped
 			return
 		}
 	}
@@ -70,7 +70,7 @@ func (t *tableau) settleColumn(col int) {
 			return
 		}
 	}
-	t.outer[col] = -1
+	t.outer[col] = loose
 }
 
 func (t *tableau) pivot(row, col int) {
@@ -148,6 +148,11 @@ func (t *tableau) extreme(v int32, sign int) *big.Rat {
 		return nil
 	}
 	for {
+		for col, w := range t.outer {
+			if w == loose && t.cells[row][col].Sign() != 0 {
+				return nil
+			}
+		}
 		col := t.improving(row, sign)
 		if col < 0 {
 			return new(big.Rat).Set(t.constant(row))
