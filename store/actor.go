@@ -40,6 +40,7 @@ const (
 	RightSetup        Right = "setup"        // programmes, calibres, depositors, holder types
 	RightAccounts     Right = "accounts"     // accounts and tokens
 	RightJournal      Right = "journal"      // read the journal
+	RightClimate      Right = "climate"      // record the climate of chambers: tokens only
 	RightSelf         Right = "self"         // one's own session and language: everybody
 )
 
@@ -68,6 +69,17 @@ const (
 // Scopes lists all scopes.
 var Scopes = []Scope{ScopeRead, ScopeReadings, ScopeBatches, ScopeClimate}
 
+// scopeRights is what a token may do: its scopes alone say it, whatever the role of its account.
+var scopeRights = map[Scope][]Right{
+	ScopeRead:     {RightBatches, RightVerdicts, RightCertificates},
+	ScopeReadings: {RightEnter},
+	ScopeBatches:  {RightRegister},
+	ScopeClimate:  {RightClimate},
+}
+
+// viaAPI marks an actor that came with a token.
+const viaAPI = "api"
+
 // Actor is who does something: a person at a page, a token at the API, the program itself.
 type Actor struct {
 	Account  uuid.UUID
@@ -84,9 +96,16 @@ type Actor struct {
 // Program is the laboratory acting by itself: first set-up, demo, drain.
 var Program = Actor{Name: "program", Title: "Ratehouse", Role: Manager, Via: "program"}
 
-// May tells whether the actor has the right; the program has all of them.
+// May tells whether the actor has the right: a person by the role, a token by its scopes; the
+// program has all of them.
 func (a Actor) May(right Right) bool {
-	return a.Via == Program.Via || a.Role.May(right)
+	switch a.Via {
+	case Program.Via:
+		return true
+	case viaAPI:
+		return slices.ContainsFunc(a.Scopes, func(s Scope) bool { return slices.Contains(scopeRights[s], right) })
+	}
+	return a.Role.May(right)
 }
 
 // Has tells whether a token carries the scope.
