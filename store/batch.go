@@ -30,10 +30,11 @@ const (
 )
 
 // Piece is one line of an intake list: a number, and the place it takes counted over all holders
-// in order (0: the next free one).
+// in order (0: the next free one). Line is where it stood in the list, for its faults; 0: its rank.
 type Piece struct {
 	Serial string
 	Place  int
+	Line   int
 }
 
 // NewBatch is a batch to register.
@@ -51,6 +52,7 @@ type NewBatch struct {
 	DeliveryNote, OrderNumber, Condition, Language string
 	ReceivedAt                                     time.Time
 	LiftReason                                     string // the QA lead lifts the stop for already certified numbers
+	Over24h                                        bool   // who registers a rate batch says: rates are differences of states over 24 h (practice notes E16)
 }
 
 // Batch is a batch as everybody sees it.
@@ -85,9 +87,19 @@ const mostPieces = 30_000
 // Register takes in a batch: checks everything, lays the movements into free holders in order,
 // and makes what the rounds will need. All faults of the form are told at once.
 func (l *Lab) Register(ctx context.Context, a Actor, n NewBatch) (Batch, error) {
-	n.tidy()
 	var made Batch
-	err := l.do(ctx, a, verb{"register_batch", RightRegister}, func(w *work) error {
+	err := l.register(ctx, a, n, func(r *registration) { made = r.queue() })
+	return made, err
+}
+
+// CheckBatch tells what Register would refuse, and writes nothing.
+func (l *Lab) CheckBatch(ctx context.Context, a Actor, n NewBatch) error {
+	return l.register(ctx, a, n, func(r *registration) { r.skip = true })
+}
+
+func (l *Lab) register(ctx context.Context, a Actor, n NewBatch, then func(*registration)) error {
+	n.tidy()
+	return l.do(ctx, a, verb{"register_batch", RightRegister}, func(w *work) error {
 		r := &registration{work: w, NewBatch: n}
 		if err := r.look(ctx); err != nil {
 			return err
@@ -95,10 +107,23 @@ func (l *Lab) Register(ctx context.Context, a Actor, n NewBatch) (Batch, error) 
 		if err := r.check(); err != nil {
 			return err
 		}
-		made = r.queue()
+		then(r)
 		return nil
 	})
-	return made, err
+}
+
+// FreeBatchCode is the next code in the manner of the one given that no batch has yet: the number at
+// its end counted on ("26-118" to "26-126"), or one put there.
+func (l *Lab) FreeBatchCode(ctx context.Context, a Actor, code string) (string, error) {
+	if !a.May(RightRegister) {
+		return "", failure(KindForbidden, "not_allowed", "right", string(RightRegister))
+	}
+	stem := strings.TrimRight(code, "0123456789")
+	last, err := rows.LastBatchNumber(ctx, l.pool, l.site, stem)
+	if err != nil {
+		return "", fmt.Errorf("batch codes like %s: %w", code, err)
+	}
+	return stem + fmt.Sprintf("%0*d", len(code)-len(stem), last+1), nil
 }
 
 func (n *NewBatch) tidy() {
@@ -226,18 +251,22 @@ func (r *registration) checkPieces(f *faults) {
 	}
 	seen, places := map[string]int{}, map[int]int{}
 	for i, p := range r.Pieces {
-		f.add(checkSerial(p.Serial, i+1))
+		line := p.Line
+		if line == 0 {
+			line = i + 1
+		}
+		f.add(checkSerial(p.Serial, line))
 		if first, ok := seen[p.Serial]; ok {
-			f.add(invalid("serials", "serial_repeated", "serial", p.Serial, "line", strconv.Itoa(i+1), "first", strconv.Itoa(first)))
+			f.add(invalid("serials", "serial_repeated", "serial", p.Serial, "line", strconv.Itoa(line), "first", strconv.Itoa(first)))
 		} else {
-			seen[p.Serial] = i + 1
+			seen[p.Serial] = line
 		}
 		if first, ok := places[p.Place]; ok && p.Place != 0 {
-			f.add(invalid("serials", "place_repeated", "place", strconv.Itoa(p.Place), "line", strconv.Itoa(i+1), "first", strconv.Itoa(first)))
+			f.add(invalid("serials", "place_repeated", "place", strconv.Itoa(p.Place), "line", strconv.Itoa(line), "first", strconv.Itoa(first)))
 		}
-		places[p.Place] = i + 1
+		places[p.Place] = line
 		if p.Place < 0 || p.Place > mostPieces {
-			f.add(invalid("serials", "place_out_of_range", "place", strconv.Itoa(p.Place), "line", strconv.Itoa(i+1)))
+			f.add(invalid("serials", "place_out_of_range", "place", strconv.Itoa(p.Place), "line", strconv.Itoa(line)))
 		}
 	}
 	for _, e := range r.earlier {
@@ -349,7 +378,7 @@ func (r *registration) body(n rows.NewBatch, pieces []rows.Piece) map[string]any
 		list[i] = []any{int(p.No), p.Serial, int(p.Attempt), p.Holder.String(), int(p.Place)}
 	}
 	return map[string]any{"batch": n.ID.String(), "code": n.Code, "programme": fmt.Sprintf("%x", n.Programme), "category": n.Category,
-		"entry": n.Entry, "depositor": n.Depositor.String(), "calibre": r.Calibre, "starts_at": n.StartsAt.Format(time.RFC3339), "pieces": list}
+		"entry": n.Entry, "over_24h": r.Over24h, "depositor": n.Depositor.String(), "calibre": r.Calibre, "starts_at": n.StartsAt.Format(time.RFC3339), "pieces": list}
 }
 
 func plannedSteps(p *trial.Programme) []trial.Step {
@@ -413,7 +442,7 @@ func PiecesOf(list string) ([]Piece, []*sheet.Refusal, error) {
 			}
 			place = n
 		}
-		pieces = append(pieces, Piece{Serial: r.Serial, Place: place})
+		pieces = append(pieces, Piece{Serial: r.Serial, Place: place, Line: r.Line})
 	}
 	slices.SortFunc(refused, func(x, y *sheet.Refusal) int { return x.Line - y.Line })
 	return pieces, refused, nil

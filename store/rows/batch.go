@@ -65,6 +65,14 @@ func ListBatches(ctx context.Context, db Reader, site int16, words string, befor
 		ORDER BY b.starts_at DESC, b.code COLLATE "C" DESC LIMIT $5`, site, words, before, beforeCode, most)
 }
 
+// LastBatchNumber is the greatest number behind the stem among the codes of batches, 0 for none.
+func LastBatchNumber(ctx context.Context, db Reader, site int16, stem string) (int, error) {
+	var last int
+	err := db.QueryRow(ctx, `SELECT coalesce(max(substring(code FROM length($2) + 1)::int), 0) FROM batch
+		WHERE site = $1 AND starts_with(code, $2) AND substring(code FROM length($2) + 1) ~ '^[0-9]{1,6}$'`, site, stem).Scan(&last)
+	return last, err
+}
+
 // NewBatch is what registering inserts.
 type NewBatch struct {
 	ID           uuid.UUID
