@@ -32,29 +32,30 @@ type command struct {
 	does    string // one line
 	example string
 	run     func(ctx context.Context, p program, args []string) int
+	flags   func(w io.Writer) // lists arguments and flags for -h; nil if there are none
 }
 
 // commands is the one table of subcommands, in the order in which help lists them. To add a
 // command give it a run function in its own file of this package.
 func commands() []command {
 	return []command{
-		{"serve", "run the laboratory's web service", "RATEHOUSE_ADDR=127.0.0.1:8080 ratehouse serve", nil},
-		{"demo", "serve an invented laboratory with demo data", "ratehouse demo", nil},
-		{"judge", "judge movements from a file of rates or states", "ratehouse judge rates.csv", runJudge},
-		{"outlook", "estimate how likely open movements will pass", "ratehouse outlook -history past.csv open.csv", nil},
-		{"simulate", "make physically plausible movements", "ratehouse simulate -n 100 -seed 1", nil},
-		{"programme", "check a programme file", "ratehouse programme check winter.json", nil},
-		{"verify", "verify a certificate file", "ratehouse verify -key lab.pub certificate.json", nil},
-		{"migrate", "bring the database up to date", "DATABASE_OWNER_URL=postgres://... ratehouse migrate", nil},
-		{"backup", "write a backup", "ratehouse backup lab.backup", nil},
-		{"restore", "restore a backup into an empty database", "ratehouse restore lab.backup", nil},
-		{"journal", "verify the journal", "ratehouse journal verify", nil},
-		{"account", "add, list or disable accounts", "ratehouse account add -role technician ada < password", nil},
-		{"token", "add, list or revoke tokens", "ratehouse token add -scope readings bench-3", nil},
-		{"send", "send readings from a file to a server", "ratehouse send readings.csv", nil},
-		{"tls", "make a certificate for the local network", "ratehouse tls init", nil},
-		{"validate", "check the program against published values", "ratehouse validate", nil},
-		{"version", "print the version", "ratehouse version", runVersion},
+		{"serve", "run the laboratory's web service", "RATEHOUSE_ADDR=127.0.0.1:8080 ratehouse serve", nil, nil},
+		{"demo", "serve an invented laboratory with demo data", "ratehouse demo", nil, nil},
+		{"judge", "judge movements from a file of rates or states", "ratehouse judge rates.csv", runJudge, judgeFlags},
+		{"outlook", "estimate how likely open movements will pass", "ratehouse outlook -history past.csv open.csv", nil, nil},
+		{"simulate", "make physically plausible movements", "ratehouse simulate -n 100 -seed 1", nil, nil},
+		{"programme", "check a programme file", "ratehouse programme check winter.json", nil, nil},
+		{"verify", "verify a certificate file", "ratehouse verify -key lab.pub certificate.json", nil, nil},
+		{"migrate", "bring the database up to date", "DATABASE_OWNER_URL=postgres://... ratehouse migrate", nil, nil},
+		{"backup", "write a backup", "ratehouse backup lab.backup", nil, nil},
+		{"restore", "restore a backup into an empty database", "ratehouse restore lab.backup", nil, nil},
+		{"journal", "verify the journal", "ratehouse journal verify", nil, nil},
+		{"account", "add, list or disable accounts", "ratehouse account add -role technician ada < password", nil, nil},
+		{"token", "add, list or revoke tokens", "ratehouse token add -scope readings bench-3", nil, nil},
+		{"send", "send readings from a file to a server", "ratehouse send readings.csv", nil, nil},
+		{"tls", "make a certificate for the local network", "ratehouse tls init", nil, nil},
+		{"validate", "check the program against published values", "ratehouse validate", nil, nil},
+		{"version", "print the version", "ratehouse version", runVersion, nil},
 	}
 }
 
@@ -81,7 +82,7 @@ func run(ctx context.Context, args []string, getenv func(string) string, stdin i
 			continue
 		}
 		if wantsHelp(args[1:]) {
-			fmt.Fprintf(stdout, "ratehouse %s: %s\n\nExample:\n  %s\n", c.name, c.does, c.example)
+			c.help(stdout)
 			return exitDone
 		}
 		if c.run == nil {
@@ -94,10 +95,18 @@ func run(ctx context.Context, args []string, getenv func(string) string, stdin i
 	return exitUsage
 }
 
-// wantsHelp tells whether the first argument asks for help. Commands with flags of their own
-// print their flags as well.
+// wantsHelp tells whether the first argument asks for help.
 func wantsHelp(args []string) bool {
 	return len(args) > 0 && (args[0] == "-h" || args[0] == "-help" || args[0] == "--help")
+}
+
+// help prints what -h shows for one command.
+func (c command) help(w io.Writer) {
+	fmt.Fprintf(w, "ratehouse %s: %s\n\n", c.name, c.does)
+	if c.flags != nil {
+		c.flags(w)
+	}
+	fmt.Fprintf(w, "Example:\n  %s\n", c.example)
 }
 
 func usage(w io.Writer) {
