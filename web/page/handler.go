@@ -102,6 +102,9 @@ func ShowError(w http.ResponseWriter, r *http.Request, err error) int {
 			view.reasons = append(view.reasons, c.Fault(one.Code, one.Args))
 		}
 	}
+	if p.status == http.StatusNotFound && !c.SignedIn {
+		view.help = words.NotFoundOut
+	}
 	show(w, r, view)
 	return p.status
 }

@@ -6,7 +6,8 @@ import "strings"
 var (
 	NotFoundTitle  = say("There is nothing at this address", "Il n’y a rien à cette adresse", "Unter dieser Adresse gibt es nichts")
 	NotFoundSub    = say("The address may be mistyped, or what stood here has another name.", "L’adresse est peut-être mal saisie, ou ce qui s’y trouvait porte un autre nom.", "Die Adresse ist vielleicht vertippt, oder was hier stand, heißt anders.")
-	NotFoundHelp   = say("Look for a batch or a movement by its number, or go to a page from the bar above.", "Cherchez un lot ou un mouvement par son numéro, ou choisissez une page dans la barre ci-dessus.", "Suchen Sie ein Los oder ein Werk nach seiner Nummer, oder wählen Sie oben eine Seite.")
+	NotFoundHelp   = say("Check the address, or go on from one of the pages of the bar above.", "Vérifiez l’adresse, ou continuez depuis une page de la barre ci-dessus.", "Prüfen Sie die Adresse, oder gehen Sie von einer Seite der Leiste oben weiter.")
+	NotFoundOut    = say("Check the address, or sign in and look for it from there.", "Vérifiez l’adresse, ou connectez-vous et cherchez à partir de là.", "Prüfen Sie die Adresse, oder melden Sie sich an und suchen Sie von dort aus.")
 	ForbiddenTitle = say("This page is not for your account", "Cette page n’est pas pour votre compte", "Diese Seite ist nicht für Ihr Konto")
 	ForbiddenSub   = say1("You are signed in as {name}.", "Vous êtes connecté comme {name}.", "Sie sind als {name} angemeldet.")
 	ForbiddenHelp  = say("If you need it for your work, ask the laboratory manager for the right to it.", "Si votre travail le demande, demandez ce droit à la direction du laboratoire.", "Wenn Sie sie für Ihre Arbeit brauchen, bitten Sie die Laborleitung um das Recht dazu.")

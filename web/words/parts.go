@@ -167,3 +167,11 @@ func Crown(code string) Text {
 	}
 	return nil
 }
+
+// What a round does.
+var (
+	MoveThen      = say("then", "puis", "dann")
+	MoveStay      = say("stay", "reste", "bleibt")
+	MoveEnd       = say("then the trial ends", "puis l’épreuve est finie", "dann endet die Prüfung")
+	WithAccessory = say("chronograph", "chronographe", "Chronograph")
+)
