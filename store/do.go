@@ -31,7 +31,8 @@ type work struct {
 	begun bool
 	out   *pgx.Batch
 	act   rows.Act
-	skip  bool // nothing happened that the journal should know
+	skip  bool  // nothing happened that the journal should know
+	once  *once // the call may be repeated, and is done once
 }
 
 // do is the one way to write. It checks the coarse right, runs fn, and commits what fn queued
@@ -45,7 +46,7 @@ func (l *Lab) do(ctx context.Context, a Actor, v verb, fn func(*work) error) err
 		return fmt.Errorf("%s: connection: %w", v.name, err)
 	}
 	defer conn.Release()
-	w := &work{lab: l, actor: a, now: l.Now(), conn: conn, out: &pgx.Batch{}}
+	w := &work{lab: l, actor: a, now: l.Now(), conn: conn, out: &pgx.Batch{}, once: onceIn(ctx)}
 	w.act = rows.Act{ID: l.newID(), Site: l.site, At: w.now, Actor: a.Account, Via: a.Via, Verb: v.name}
 	if err := fn(w); err != nil {
 		return errors.Join(err, w.rollback(ctx))
@@ -60,14 +61,21 @@ func (l *Lab) do(ctx context.Context, a Actor, v verb, fn func(*work) error) err
 // read runs what the verb must know before it decides; the first one begins the transaction in
 // the same round trip.
 func (w *work) read(ctx context.Context, b *pgx.Batch) error {
-	if !w.begun {
+	first := !w.begun
+	if first {
 		w.begun = true
 		begin := &pgx.Batch{}
 		begin.Queue("begin")
+		if w.once != nil {
+			w.once.look(begin, w.actor)
+		}
 		b.QueuedQueries = append(begin.QueuedQueries, b.QueuedQueries...)
 	}
 	if err := w.conn.SendBatch(ctx, b).Close(); err != nil {
 		return named(err, w.act.Verb)
+	}
+	if first && w.once != nil {
+		return w.once.check()
 	}
 	return nil
 }
@@ -75,6 +83,11 @@ func (w *work) read(ctx context.Context, b *pgx.Batch) error {
 func (w *work) commit(ctx context.Context) error {
 	if w.skip && w.out.Len() == 0 {
 		return w.rollback(ctx)
+	}
+	if w.once != nil && !w.begun {
+		if err := w.read(ctx, &pgx.Batch{}); err != nil {
+			return err
+		}
 	}
 	last := &pgx.Batch{}
 	if !w.begun {
@@ -90,6 +103,9 @@ func (w *work) commit(ctx context.Context) error {
 		rows.QueueAct(last, w.act)
 	}
 	last.QueuedQueries = append(last.QueuedQueries, w.out.QueuedQueries...)
+	if o := w.once; o != nil {
+		rows.QueueRequest(last, w.actor.Account, o.Key, o.Route, o.Hash, w.now)
+	}
 	last.Queue("commit")
 	err := w.conn.SendBatch(ctx, last).Close()
 	if err == nil {
