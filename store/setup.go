@@ -7,7 +7,6 @@ import (
 	"strings"
 
 	"github.com/google/uuid"
-	"github.com/jackc/pgx/v5"
 
 	"ratehouse/store/rows"
 	"ratehouse/trial"
@@ -310,12 +309,18 @@ func (l *Lab) programme(ctx context.Context, hash []byte) (*trial.Programme, err
 // AddProgramme adds a version of a programme; versions are never changed, only superseded.
 func (l *Lab) AddProgramme(ctx context.Context, a Actor, p *trial.Programme) error {
 	hash := sheet.Hash(p)
-	return l.do(ctx, a, verb{"add_programme", RightSetup}, func(w *work) error {
+	err := l.do(ctx, a, verb{"add_programme", RightSetup}, func(w *work) error {
 		w.act.Body = map[string]any{"code": p.Code, "version": p.Version, "hash": fmt.Sprintf("%x", hash)}
 		rows.QueueProgramme(w.out, l.site, rows.Programme{Hash: hash[:], Code: p.Code, Version: p.Version, Title: p.Title,
 			Body: string(sheet.Canonical(p))}, w.act.ID)
 		return nil
 	})
+	if err == nil {
+		l.mu.Lock()
+		defer l.mu.Unlock()
+		l.programmes[hash] = p
+	}
+	return err
 }
 
 // standardTypes are the holders a new laboratory starts with. Strips of five are common practice,
@@ -344,10 +349,6 @@ func (l *Lab) Found(ctx context.Context, h House) error {
 		}
 	}
 	return nil
-}
-
-func findProgramme(b *pgx.Batch, into *[]rows.Programme, l *Lab, code string) {
-	rows.FindProgramme(b, into, l.site, code)
 }
 
 type whole interface{ ~int16 | ~int32 | ~int64 }

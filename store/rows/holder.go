@@ -45,14 +45,15 @@ type Holder struct {
 	Type string
 }
 
-// FreeHolders queues the search for empty holders of a type that are not retired, by code; the
-// rows are locked, so that two registrations never take the same one.
+// FreeHolders queues the search for empty holders of a type that are not retired, by code.
+// Registrations of a type queue up for it, so that two never take the same one.
 func FreeHolders(b *pgx.Batch, into *[]Holder, site int16, kind string, most int) {
+	b.Queue(`SELECT pg_advisory_xact_lock($1::int, hashtext($2))`, int32(site), "holders "+kind)
 	list(b, into, `SELECT h.id, h.code, h.type FROM holder h
 		WHERE h.site = $1 AND h.type = $2
 		  AND NOT EXISTS (SELECT FROM place p WHERE p.holder = h.id)
 		  AND NOT EXISTS (SELECT FROM holder_move m WHERE m.holder = h.id AND m.retired)
-		ORDER BY h.code LIMIT $3 FOR UPDATE SKIP LOCKED`, site, kind, most)
+		ORDER BY h.code LIMIT $3`, site, kind, most)
 }
 
 // LastHolder queues the highest number among holders of a type that carry our numbering TYPE-0001.
