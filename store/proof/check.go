@@ -341,8 +341,13 @@ func (c *checker) reading(where string, d Reading) {
 	c.need((d.Value == "") != (d.Code == ""), where, "has not exactly one of value and code")
 	c.decimal(where+".value", d.Value, true)
 	c.need(d.Kind == ReadingRate || !d.ReadAt.IsZero(), where+".read_at", "missing")
-	c.need(!d.ReadAt.Time().After(c.record.ReleasedAt.Time()), where+".read_at", "is after the release")
+	latest := c.record.ReleasedAt.Time().Add(clockSlack)
+	c.need(!d.ReadAt.Time().After(latest), where+".read_at", "is after the release")
 }
+
+// clockSlack is how far the clock of a tablet or a station may be ahead of the laboratory's
+// before its instants contradict the release: a wrong clock is never a reason to refuse.
+const clockSlack = 24 * time.Hour
 
 // evidence wants every printed rate to rest on current readings: on a state or a left state
 // that closes its day, or else on one typed rate of just that value; and no typed rate in

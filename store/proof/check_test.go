@@ -141,7 +141,7 @@ func TestCheckEvidence(t *testing.T) {
 		{"typist", "readings[0].entered_by", func(r *Record) { r.Readings[0].EnteredBy = "" }},
 		{"value and code", "readings[0]", func(r *Record) { r.Readings[0].Code = "stopped" }},
 		{"neither value nor code", "readings[0]", func(r *Record) { r.Readings[0].Value = "" }},
-		{"read after the release", "readings[0].read_at", func(r *Record) { r.Readings[0].ReadAt = At(r.ReleasedAt.Time().Add(time.Hour)) }},
+		{"read after the release", "readings[0].read_at", func(r *Record) { r.Readings[0].ReadAt = At(r.ReleasedAt.Time().Add(25 * time.Hour)) }},
 		{"state without instant", "readings[0].read_at", func(r *Record) { r.Readings[0].Kind, r.Readings[0].ReadAt = ReadingState, Instant{} }},
 		{"correction without reason", "readings[5].reason", func(r *Record) { r.Readings[5].Reason = "" }},
 		{"reason without correction", "readings[0].reason", func(r *Record) { r.Readings[0].Reason = "x" }},
@@ -275,6 +275,7 @@ func TestCheckAccepts(t *testing.T) {
 			r.Conditions = Conditions{ConditionsMeasured, []Chamber{{Code: "A", NominalC: "23", MeanC: "23.2"}}}
 		}},
 		{name: "guarded", edit: guard},
+		{name: "a tablet's clock ahead", edit: func(r *Record) { r.Readings[0].ReadAt = At(r.ReleasedAt.Time().Add(time.Hour)) }},
 	} {
 		r := golden(t, KindCertificate)
 		s.edit(&r)

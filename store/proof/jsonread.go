@@ -257,3 +257,8 @@ func scanNumber(s string) (int, bool) {
 	}
 	return i, true
 }
+
+// ParseJSON reads one JSON text strictly into nil, bool, string, json.Number, []any and
+// map[string]any: ErrText, ErrSyntax, ErrDuplicateKey and ErrDepth say what encoding/json would let
+// pass. Errors name the byte where reading ended.
+func ParseJSON(raw []byte) (any, error) { return parseJSON(raw) }

@@ -203,7 +203,7 @@ type Record struct {
 	Verdict  Verdict  `json:"verdict"`
 	Failed   []string `json:"failed"`    // symbols of failed criteria, in column order
 	End      string   `json:"end"`       // "" or EndRejected, EndRemoved
-	EndCause string   `json:"end_cause"` // code such as "stopped"; empty without End
+	EndCause string   `json:"end_cause"` // in words or as a code; empty without End
 	Remarks  []Remark `json:"remarks"`
 
 	Uncertainty Uncertainty `json:"uncertainty"`
@@ -302,7 +302,7 @@ type Day struct {
 // Reading is one piece of evidence, current or superseded.
 type Reading struct {
 	Step       int     `json:"step"`
-	Day        int     `json:"day"`  // programme day the step closes; 0 = none (start, idle, repeated)
+	Day        int     `json:"day"`  // programme day the step closes; 0 = none (start, idle, a phase that was repeated)
 	Kind       string  `json:"kind"` // ReadingRate, ReadingState, ...
 	Method     string  `json:"method"`
 	Value      Decimal `json:"value"` // s, or s/d for a rate; empty if Code is set

@@ -23,8 +23,8 @@ var (
 // publishedKey is the thumbprint of the key of RFC 8037 A.1 and A.3.
 const publishedKey = "kPrK_qmxVWaYVA9wwBF6Iuo3vVzz7TxHCTwXBygrS4k"
 
-// maxFile bounds what VerifyFile reads as one record, in bytes.
-const maxFile = 4 << 20
+// MaxFile bounds what VerifyFile reads as one record, in bytes.
+const MaxFile = 4 << 20
 
 // Issue checks a record and signs its canonical form. It fails with Faults, with
 // ErrPublishedKey, or as Canonical and Sign do.
@@ -98,8 +98,8 @@ func readRecord(payload []byte) (Record, error) {
 // VerifyFile is Open for the content of a file: one line end after the signature is allowed,
 // anything else around it is not.
 func VerifyFile(pub PublicKey, file []byte) (Record, error) {
-	if len(file) > maxFile {
-		return Record{}, fmt.Errorf("%w: longer than %d bytes", ErrMalformed, maxFile)
+	if len(file) > MaxFile {
+		return Record{}, fmt.Errorf("%w: longer than %d bytes", ErrMalformed, MaxFile)
 	}
 	file = bytes.TrimSuffix(file, []byte("\n"))
 	file = bytes.TrimSuffix(file, []byte("\r"))

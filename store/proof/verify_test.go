@@ -210,7 +210,7 @@ func TestVerifyFileEdges(t *testing.T) {
 			t.Errorf("%q: %v", good[len(file):], err)
 		}
 	}
-	for _, bad := range []string{"", "\n", file + "\n\n", "\n" + file, "\ufeff" + file, file + " ", file + file, strings.Repeat("A", maxFile+1)} {
+	for _, bad := range []string{"", "\n", file + "\n\n", "\n" + file, "\ufeff" + file, file + " ", file + file, strings.Repeat("A", MaxFile+1)} {
 		if _, err := VerifyFile(public, []byte(bad)); !errors.Is(err, ErrMalformed) {
 			t.Errorf("%.20q...: %v", bad, err)
 		}
