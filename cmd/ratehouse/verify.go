@@ -11,23 +11,26 @@ import (
 	"ratehouse/store/proof"
 )
 
-const verifyHelp = `Usage: ratehouse verify -key KEY [-json] FILE
+const verifyExample = "ratehouse verify -key laboratory-public.pem 26-118-0113.jws"
+
+// verifyFlags tells what -h tells about arguments and flags.
+func verifyFlags(w io.Writer) {
+	fmt.Fprint(w, `Usage: ratehouse verify -key KEY [-json] FILE
 
 Checks that a certificate or a rejection report is as the laboratory signed it,
-without a database or a network. KEY is a file with the laboratory's public key,
-PEM or JWK, got from the laboratory itself. FILE is the signed record as
-downloaded beside the paper, - for standard input. Compare what is printed with
-the paper: the check is about the file, not about the sheet in your hand.
+without a database or a network. FILE is the signed record as downloaded beside
+the paper, - for standard input. Compare what is printed with the paper: the
+check is about the file, not about the sheet in your hand.
 
-  -key KEY   the laboratory's public key
+  -key KEY   file with the laboratory's public key, PEM or JWK, got from the
+             laboratory itself and not together with the paper
   -json      print the whole record instead of a summary
 
 Exit status: 0 genuine; 1 altered, signed by somebody else, or no such record;
 2 wrong usage, or a file that cannot be read.
 
-Example:
-  ratehouse verify -key laboratory-public.pem 26-118-0113.jws
-`
+`)
+}
 
 func runVerify(_ context.Context, p program, args []string) int {
 	return verify(args, p.stdin, p.stdout, p.stderr)
@@ -40,9 +43,8 @@ func verify(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 	keyFile, whole := flags.String("key", "", ""), flags.Bool("json", false, "")
 	switch err := flags.Parse(args); {
 	case errors.Is(err, flag.ErrHelp):
-		if _, err := io.WriteString(stdout, verifyHelp); err != nil {
-			return exitUsage
-		}
+		verifyFlags(stdout)
+		fmt.Fprintf(stdout, "Example:\n  %s\n", verifyExample)
 		return exitDone
 	case err != nil:
 		return verifyUsage(stderr, err.Error())

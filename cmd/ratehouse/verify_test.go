@@ -3,7 +3,6 @@ package main
 import (
 	"bytes"
 	"errors"
-	"io"
 	"os"
 	"path/filepath"
 	"strings"
@@ -137,9 +136,6 @@ func TestVerifyUnwritableOutput(t *testing.T) {
 	var errs bytes.Buffer
 	if code := verify(args, nil, full{}, &errs); code != exitUsage || !strings.Contains(errs.String(), "no space") {
 		t.Errorf("%d, %s", code, errs.String())
-	}
-	if code := verify([]string{"-h"}, nil, full{}, io.Discard); code != exitUsage {
-		t.Errorf("-h: %d", code)
 	}
 }
 
