@@ -263,6 +263,7 @@ CREATE TABLE movement (
   CONSTRAINT movement_attempt CHECK (attempt > 0)
 );
 CREATE INDEX movement_serial ON movement (serial text_pattern_ops);
+CREATE INDEX movement_serial_end ON movement (reverse(serial) text_pattern_ops);
 CREATE INDEX movement_identity ON movement (depositor, serial, calibre);
 COMMENT ON COLUMN movement.depositor IS 'identity is (depositor, calibre, number); repeated from the batch so that one index answers';
 
@@ -518,6 +519,7 @@ CREATE TABLE certificate (
   CONSTRAINT certificate_replaced_once UNIQUE (replaces)
 );
 CREATE UNIQUE INDEX certificate_first_once ON certificate (batch, no) WHERE replaces IS NULL;
+CREATE INDEX certificate_movement ON certificate (batch, no);
 
 CREATE TABLE revocation (
   number text PRIMARY KEY REFERENCES certificate,

@@ -143,7 +143,7 @@ func movementOf(b *Batch, r *rows.Movement) Movement {
 	m := Movement{No: int(r.No), Serial: r.Serial, Attempt: int(r.Attempt), Holder: value(r.HolderCode), Place: int(value(r.Place)),
 		End: endOf(r.Ended), Cause: value(r.Cause), EndCode: observation(value(r.EndCode)), EndStep: int(value(r.EndStep)),
 		EndedAt: value(r.EndedAt).UTC(), Paper: value(r.Certificate), PaperKind: value(r.PaperKind),
-		Corrections: int(r.Corrections), Remarks: int(r.Remarks), series: r.Series}
+		Corrections: corrections(&r.Series), Remarks: int(r.Remarks), series: r.Series}
 	m.Rates = b.Programme.Assemble(b.Steps, cellsOf(b, &r.Series))
 	m.Codes = make([]Observation, len(b.Steps))
 	for k := range b.Steps {
@@ -153,6 +153,16 @@ func movementOf(b *Batch, r *rows.Movement) Movement {
 		}
 	}
 	return m
+}
+
+// corrections counts the entries that replaced another one: what the counters of the cells say.
+func corrections(s *rows.Series) (n int) {
+	for _, cells := range [][]int16{s.RateNth, s.FoundNth, s.LeftNth} {
+		for _, nth := range cells {
+			n += max(int(nth)-1, 0)
+		}
+	}
+	return n
 }
 
 // cellsOf turns the working series into what the engine assembles.

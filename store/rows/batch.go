@@ -2,6 +2,7 @@ package rows
 
 import (
 	"context"
+	"strings"
 	"time"
 
 	"github.com/google/uuid"
@@ -49,6 +50,11 @@ func FindBatch(b *pgx.Batch, into *[]Batch, site int16, code string) {
 // FindBatches queues the look-up of several batches by code.
 func FindBatches(b *pgx.Batch, into *[]Batch, site int16, codes []string) {
 	list(b, into, batchQuery+` AND b.code = ANY ($2::text[])`, site, codes)
+}
+
+// BatchesByID queues the look-up of batches by their ids.
+func BatchesByID(b *pgx.Batch, into *[]Batch, ids []uuid.UUID) {
+	list(b, into, strings.Replace(batchQuery, "b.site = $1", "b.id = ANY ($1::uuid[])", 1), ids)
 }
 
 // RunningBatches lists the batches that started after since, by code.

@@ -59,7 +59,7 @@ func QueueRevocation(b *pgx.Batch, number, reason string, at time.Time, act uuid
 
 // FindMovements queues several movements of a batch, in order.
 func FindMovements(b *pgx.Batch, into *[]Movement, site int16, batch string, serials []string) {
-	list(b, into, movementQuery+`WHERE m.batch = (SELECT id FROM batch WHERE site = $1 AND code = $2) AND m.serial = ANY ($3::text[]) ORDER BY m.no`, site, batch, serials)
+	list(b, into, movementQuery+` AND m.serial = ANY ($3::text[]) ORDER BY m.no`, site, batch, serials)
 }
 
 // ReadingsOfMany queues all readings of several movements, in the order of movements and trial.

@@ -21,28 +21,35 @@ type Movement struct {
 	EndedAt     *time.Time
 	Certificate *string // newest paper
 	PaperKind   *string
-	Corrections int32
 	Remarks     int32
 }
 
-const movementQuery = `SELECT ` + seriesColumns + `, m.attempt, p.holder, h.code AS holder_code, h.type AS holder_type, p.place,
-		e.cause, e.code AS end_code, e.step AS end_step, e.at AS ended_at, c.number AS certificate, c.kind AS paper_kind,
-		(SELECT count(*)::int FROM reading r WHERE r.batch = m.batch AND r.no = m.no AND r.nth > 1) AS corrections,
-		(SELECT count(*)::int FROM remark k WHERE k.batch = m.batch AND k.no = m.no) AS remarks
+// movementQuery gathers what hangs on movements once for the batch and joins it: asked for each row,
+// a batch of 5,000 would cost as many searches of every table.
+const movementQuery = `SELECT s.batch, s.no, m.serial, s.rate, s.found, s.as_left, s.at_s, s.code, s.rate_nth, s.found_nth, s.left_nth, s.ended,
+		coalesce(c.released, false) AS released, m.attempt, p.holder, h.code AS holder_code, h.type AS holder_type, p.place,
+		e.cause, e.code AS end_code, e.step AS end_step, e.at AS ended_at, c.number AS certificate, c.kind AS paper_kind, coalesce(k.n, 0) AS remarks
 	FROM movement m JOIN series s ON s.batch = m.batch AND s.no = m.no
 	LEFT JOIN place p ON p.batch = m.batch AND p.no = m.no LEFT JOIN holder h ON h.id = p.holder
-	LEFT JOIN LATERAL (SELECT cause, code, step, at FROM ending e WHERE e.batch = m.batch AND e.no = m.no ORDER BY nth DESC LIMIT 1) e ON s.ended > 0
-	LEFT JOIN LATERAL (SELECT number, kind FROM certificate c WHERE c.batch = m.batch AND c.no = m.no
-		AND NOT EXISTS (SELECT FROM certificate n WHERE n.replaces = c.number)) c ON true `
+	LEFT JOIN (SELECT DISTINCT ON (no) no, cause, code, step, at FROM ending WHERE batch = ` + batchByCode + ` ORDER BY no, nth DESC) e
+		ON s.ended > 0 AND e.no = m.no
+	LEFT JOIN (SELECT c.no, max(c.number) FILTER (WHERE n.number IS NULL) AS number, max(c.kind) FILTER (WHERE n.number IS NULL) AS kind,
+			bool_or(v.number IS NULL) AS released
+		FROM certificate c LEFT JOIN certificate n ON n.replaces = c.number LEFT JOIN revocation v ON v.number = c.number
+		WHERE c.batch = ` + batchByCode + ` GROUP BY c.no) c ON c.no = m.no
+	LEFT JOIN (SELECT no, count(*)::int AS n FROM remark WHERE batch = ` + batchByCode + ` AND no IS NOT NULL GROUP BY no) k ON k.no = m.no
+	WHERE m.batch = ` + batchByCode
+
+const batchByCode = `(SELECT id FROM batch WHERE site = $1 AND code = $2)`
 
 // MovementsOf queues all movements of a batch in order.
 func MovementsOf(b *pgx.Batch, into *[]Movement, batch string, site int16) {
-	list(b, into, movementQuery+`WHERE m.batch = (SELECT id FROM batch WHERE site = $2 AND code = $1) ORDER BY m.no`, batch, site)
+	list(b, into, movementQuery+` ORDER BY m.no`, site, batch)
 }
 
 // FindMovement queues the look-up of one movement; into has one row or none.
 func FindMovement(b *pgx.Batch, into *[]Movement, site int16, batch, serial string) {
-	list(b, into, movementQuery+`WHERE m.batch = (SELECT id FROM batch WHERE site = $1 AND code = $2) AND m.serial = $3`, site, batch, serial)
+	list(b, into, movementQuery+` AND m.serial = $3`, site, batch, serial)
 }
 
 // Ending is one row of ending.
