@@ -3,6 +3,7 @@ package trial
 import (
 	"fmt"
 	"slices"
+	"strings"
 )
 
 // Fault is one thing wrong with a programme: where, as a path in its file form, and what, as a
@@ -45,6 +46,11 @@ var faultTexts = map[string]string{
 	"position":         "%s is not a position (CH, FH, 3H, 6H, 9H, 12H)",
 	"out_of_range":     "%s is outside what is allowed (%s to %s)",
 	"not_built":        "%s: not built yet",
+	"not_json":         "is not JSON: %s",
+	"wrong_type":       "must be %s",
+	"unknown_name":     "is not a name of the programme file",
+	"bad_symbol":       "%s is no symbol: a letter, then letters, digits or _, and no name of a fixed column",
+	"bad_code":         "%s is no code: up to 40 of letters, digits, . _ -, beginning with a letter or digit",
 }
 
 func fault(path, code string, args ...string) *Fault { return &Fault{path, code, args} }
@@ -65,6 +71,9 @@ func (p *Programme) checkHead() *Fault {
 		if field.value == "" {
 			return fault(field.path, "missing")
 		}
+	}
+	if !isCode(p.Code) {
+		return fault("code", "bad_code", p.Code)
 	}
 	if p.Measurand != AsPerformed && p.Measurand != AtNominal {
 		return fault("measurand", "unknown_value", string(p.Measurand))
@@ -141,8 +150,8 @@ func (p *Programme) checkCategories() *Fault {
 	seen := map[string]bool{}
 	for i, c := range p.Categories {
 		path := fmt.Sprintf("categories[%d].code", i)
-		if c.Code == "" {
-			return fault(path, "missing")
+		if !isCode(c.Code) {
+			return fault(path, "bad_code", c.Code)
 		}
 		if seen[c.Code] {
 			return fault(path, "repeated", c.Code)
@@ -159,8 +168,8 @@ func (p *Programme) checkCriteria() *Fault {
 	seen := map[string]bool{}
 	for i, c := range p.Criteria {
 		path := fmt.Sprintf("criteria[%d]", i)
-		if c.Symbol == "" {
-			return fault(path+".symbol", "missing")
+		if !isSymbol(c.Symbol) {
+			return fault(path+".symbol", "bad_symbol", c.Symbol)
 		}
 		if seen[c.Symbol] {
 			return fault(path+".symbol", "repeated", c.Symbol)
@@ -177,6 +186,20 @@ func (p *Programme) checkCriteria() *Fault {
 		seen[c.Symbol] = true
 	}
 	return nil
+}
+
+// isCode tells the closed form of codes, so that they need no quoting anywhere.
+func isCode(s string) bool {
+	const inner = "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz0123456789"
+	return s != "" && len(s) <= 40 && strings.Trim(s[:1], inner) == "" && strings.Trim(s, inner+"._-") == ""
+}
+
+// isSymbol tells a criterion's symbol: a column name beside judge's fixed ones.
+func isSymbol(s string) bool {
+	const letters = "ABCDEFGHIJKLMNOPQRSTUVWXYZabcdefghijklmnopqrstuvwxyz"
+	fixed := []string{"serial", "category", "verdict", "failed", "unreachable", "calibre", "end", "end_cause", "pAll"}
+	return s != "" && len(s) <= 20 && strings.Trim(s[:1], letters) == "" &&
+		strings.Trim(s, letters+"0123456789_") == "" && !slices.Contains(fixed, s)
 }
 
 func (p *Programme) checkLimits(path string, limits map[string]Limit) *Fault {

@@ -46,7 +46,7 @@ func quickMilli(b []byte) (v int64, ok bool) {
 		}
 		decimals = digits
 	}
-	if digits == 0 {
+	if digits == 0 || digits > 15 {
 		return 0, false
 	}
 	switch digits - decimals {

@@ -41,6 +41,8 @@ const (
 	UnknownColumn  Code = "unknown_column"
 	RepeatedColumn Code = "repeated_column"
 	StepAndDay     Code = "step_and_day"
+	BadSerial      Code = "bad_serial"
+	RepeatedCell   Code = "repeated_cell"
 )
 
 var texts = map[Code]string{
@@ -72,6 +74,8 @@ var texts = map[Code]string{
 	MissingColumn:  "the column is missing",
 	UnknownColumn:  "the column is not known here (%s)",
 	RepeatedColumn: "the column appears twice",
+	BadSerial:      "serial %s begins with %s; spreadsheets take such a text for a formula",
+	RepeatedCell:   "serial %s has a value for this step on line %s already",
 	StepAndDay:     "a file has either a column step or a column day",
 }
 
@@ -104,7 +108,11 @@ func (r *Refusal) Reason() string {
 	for i, a := range r.Args {
 		args[i] = a
 	}
-	return fmt.Sprintf(texts[r.Code], args...)
+	text, ok := texts[r.Code]
+	if !ok { // a code of another package: the code itself says what
+		return strings.Join(append([]string{string(r.Code)}, r.Args...), " ")
+	}
+	return fmt.Sprintf(text, args...)
 }
 
 // Codes lists every code with the number of its arguments, for web/words to be complete.

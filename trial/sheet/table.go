@@ -198,13 +198,13 @@ func (t *table) splitQuoted(line []byte) *Refusal {
 		if !closed {
 			return t.quoteFault(refuse(OpenQuote))
 		}
-		t.cells = append(t.cells, trim(cell))
 		after = t.skipBlanks(after)
+		if len(after) > 0 && after[0] != t.sep {
+			return t.quoteFault(refuse(StrayQuote, Visible(string(cell))))
+		}
+		t.cells = append(t.cells, trim(cell))
 		if len(after) == 0 {
 			return nil
-		}
-		if after[0] != t.sep {
-			return t.quoteFault(refuse(StrayQuote, Visible(string(cell))))
 		}
 		line = after[1:]
 	}
