@@ -1,10 +1,12 @@
 package store
 
 import (
+	"bytes"
 	"context"
 	"errors"
 	"fmt"
-	"slices"
+	"math"
+	"strconv"
 	"strings"
 	"time"
 
@@ -12,242 +14,7 @@ import (
 
 	"ratehouse/store/proof"
 	"ratehouse/store/rows"
-	"ratehouse/trial"
 )
-
-// Released is what became of one movement of a release.
-type Released struct {
-	Serial string
-	Number string // of the paper, if it was released
-	Kind   string // "certificate", "rejection"
-	Why    string // code, if it was held: see HoldCodes
-}
-
-// HoldCodes is the closed list of reasons that hold a release.
-var HoldCodes = []string{"no_movement", "open", "withdrawn", "void", "released_already", "open_remark", "four_eyes", "no_verdict"}
-
-// mostReleased movements in one transaction: about 3 MB of records.
-const mostReleased = 500
-
-// enteredAtMost is the share of a movement's readings that its releaser may have entered himself.
-// Who corrected one, confirmed a second look or decided a remark on it is barred altogether
-// (practice notes X8).
-const enteredAtMost = 0.25
-
-// Release freezes the judgement of the movements: a certificate for those that pass, a rejection
-// report for those that fail. What may not be released is held, with the reason; the others go.
-func (l *Lab) Release(ctx context.Context, a Actor, code string, serials []string) ([]Released, error) {
-	if l.key.IsZero() {
-		return nil, failure(KindForbidden, "no_signing_key")
-	}
-	if !a.May(RightRelease) {
-		return nil, failure(KindForbidden, "not_allowed", "right", string(RightRelease))
-	}
-	var out []Released
-	for part := range slices.Chunk(serials, mostReleased) {
-		done, err := l.releasePart(ctx, a, code, part)
-		if err != nil {
-			return out, err
-		}
-		out = append(out, done...)
-	}
-	return out, nil
-}
-
-func (l *Lab) releasePart(ctx context.Context, a Actor, code string, serials []string) (out []Released, err error) {
-	err = l.do(ctx, a, verb{"release", RightRelease}, func(w *work) error {
-		r := &release{work: w}
-		if err := r.look(ctx, code, serials); err != nil {
-			return err
-		}
-		for _, serial := range serials {
-			one, err := r.decide(serial)
-			if err != nil {
-				return err
-			}
-			out = append(out, one)
-		}
-		r.finish(out)
-		return nil
-	})
-	return out, err
-}
-
-// release gathers what a release needs.
-type release struct {
-	*work
-	house     House
-	batch     Batch
-	category  trial.Category
-	judge     *trial.Judge
-	movements map[string]*rows.Movement
-	readings  map[int16][]rows.SeenReading
-	remarks   []Remark
-	assessors []rows.RemarkActor
-}
-
-func (r *release) look(ctx context.Context, code string, serials []string) error {
-	var (
-		found     []rows.Batch
-		cards     []rows.Calibre
-		locked    []rows.Series
-		movements []rows.Movement
-		readings  []rows.SeenReading
-		remarks   []rows.Remark
-		l, b      = r.lab, &pgx.Batch{}
-	)
-	rows.LockSeries(b, &locked, l.site, repeat(code, len(serials)), serials)
-	rows.FindBatch(b, &found, l.site, code)
-	rows.CardOf(b, &cards, l.site, code)
-	rows.FindMovements(b, &movements, l.site, code, serials)
-	rows.ReadingsOfMany(b, &readings, l.site, code, serials)
-	rows.RemarksOf(b, &remarks, l.site, code)
-	rows.RemarkActors(b, &r.assessors, l.site, code)
-	if err := r.read(ctx, b); err != nil {
-		return err
-	}
-	if len(found) == 0 {
-		return failure(KindNotFound, "no_batch", "code", code)
-	}
-	var err error
-	if r.batch, err = l.batchOf(ctx, found[0]); err != nil {
-		return err
-	}
-	if len(cards) == 1 {
-		r.batch.Calibre = calibreOf(cards[0])
-	}
-	if r.judge, err = trial.NewJudge(r.batch.Programme, r.batch.Category); err != nil {
-		return fmt.Errorf("batch %s: %w", code, err)
-	}
-	r.house, r.remarks = l.House(), remarksOf(remarks)
-	r.movements, r.readings = map[string]*rows.Movement{}, map[int16][]rows.SeenReading{}
-	for i := range movements {
-		r.movements[movements[i].Serial] = &movements[i]
-	}
-	for _, x := range readings {
-		r.readings[x.No] = append(r.readings[x.No], x)
-	}
-	for _, c := range r.batch.Programme.Categories {
-		if c.Code == r.batch.Category {
-			r.category = c
-		}
-	}
-	return nil
-}
-
-func repeat(s string, n int) []string {
-	out := make([]string, n)
-	for i := range out {
-		out[i] = s
-	}
-	return out
-}
-
-func (r *release) decide(serial string) (Released, error) {
-	m := r.movements[serial]
-	if m == nil {
-		return Released{Serial: serial, Why: "no_movement"}, nil
-	}
-	moved := movementOf(&r.batch, m)
-	var judged trial.Result
-	r.judge.Rates(moved.Rates, &judged)
-	kind, why := paperFor(moved.End, judged.Verdict)
-	if why == "" {
-		why = r.holds(m, serial)
-	}
-	if why != "" {
-		return Released{Serial: serial, Why: why}, nil
-	}
-	return r.issue(kind, m, &moved, &judged)
-}
-
-// paperFor says which paper a movement gets, or why none.
-func paperFor(end End, v trial.Verdict) (proof.Kind, string) {
-	switch {
-	case end == Withdrawn || end == Void:
-		return "", string(end)
-	case end == Rejected || end == Removed || v == trial.Fail:
-		return proof.KindRejection, ""
-	case v == trial.Pass:
-		return proof.KindCertificate, ""
-	case v == trial.None:
-		return "", "no_verdict"
-	}
-	return "", "open"
-}
-
-func (r *release) holds(m *rows.Movement, serial string) string {
-	if m.Certificate != nil {
-		return "released_already"
-	}
-	for _, k := range r.remarks {
-		if k.Serial == serial && k.State != "closed" {
-			return "open_remark"
-		}
-	}
-	if r.touched(m.No) {
-		return "four_eyes"
-	}
-	return ""
-}
-
-// touched tells whether the releaser had a hand in the movement's readings or remarks.
-func (r *release) touched(no int16) bool {
-	me, mine, all := r.actor.Account, 0, 0
-	for _, x := range r.readings[no] {
-		own := x.EnteredBy == me || x.ReadBy == me
-		if own && (x.Nth > 1 && x.Kind <= 3 || x.Flags&flagSecondLook != 0) {
-			return true
-		}
-		all++
-		if own {
-			mine++
-		}
-	}
-	for _, k := range r.assessors {
-		if k.No == no && k.Actor == me && k.State != "open" {
-			return true
-		}
-	}
-	return float64(mine) > enteredAtMost*float64(all)
-}
-
-func (r *release) issue(kind proof.Kind, m *rows.Movement, moved *Movement, judged *trial.Result) (Released, error) {
-	rec := r.record(kind, m, moved, judged)
-	jws, err := proof.Issue(r.lab.key, rec)
-	if err != nil {
-		return Released{}, fmt.Errorf("paper for %s of batch %s: %w", m.Serial, r.batch.Code, err)
-	}
-	text, err := rec.Canonical()
-	if err != nil {
-		return Released{}, err
-	}
-	hash, err := rec.Hash()
-	if err != nil {
-		return Released{}, err
-	}
-	rows.QueueCertificate(r.out, r.lab.site, rows.Certificate{Number: rec.Number, Batch: m.Batch, No: m.No, Kind: string(kind), Record: string(text),
-		Hash: hash[:], JWS: jws, KeyID: r.lab.key.ID(), At: r.now}, r.act.ID)
-	return Released{Serial: m.Serial, Number: rec.Number, Kind: string(kind)}, nil
-}
-
-// finish writes the act: which papers, by their hashes.
-func (r *release) finish(out []Released) {
-	list := []any{}
-	for _, x := range out {
-		if x.Number != "" {
-			list = append(list, []any{x.Number, x.Serial, x.Kind})
-		}
-	}
-	if r.skip = len(list) == 0; r.skip {
-		return
-	}
-	key := &pgx.Batch{}
-	rows.QueueKey(key, r.lab.site, r.lab.key.ID(), string(r.lab.key.Public().JWK()), r.now)
-	r.out.QueuedQueries = append(key.QueuedQueries, r.out.QueuedQueries...)
-	r.act.Batch = &r.batch.ID
-	r.act.Body = map[string]any{"batch": r.batch.ID.String(), "papers": list}
-}
 
 // Certificate is a paper as it was frozen, and what happened to it since.
 type Certificate struct {
@@ -280,29 +47,74 @@ func (l *Lab) paper(ctx context.Context, number string) (Certificate, error) {
 	return paperOf(row)
 }
 
-// paperOf opens a stored paper with its signature checked: what was altered in the database is not
-// shown as a paper.
+// paperOf opens a stored paper with its signature checked: what was altered in the database, or put
+// under another number, is not shown as a paper.
 func paperOf(row rows.Certificate) (Certificate, error) {
 	c := Certificate{JWS: row.JWS, PublicKey: value(row.PublicJWK), Replaces: value(row.Replaces), ReplacedBy: value(row.ReplacedBy),
 		RevokedAt: value(row.RevokedAt).UTC(), Revoked: value(row.Revoked)}
 	pub, err := proof.ParsePublicKey([]byte(c.PublicKey))
 	if err != nil {
-		return c, fmt.Errorf("certificate %s: key: %w", row.Number, err)
+		return Certificate{}, fmt.Errorf("certificate %s: key: %w", row.Number, err)
 	}
 	if c.Record, err = proof.Open(pub, row.JWS); err != nil {
-		return c, fmt.Errorf("certificate %s: %w", row.Number, err)
+		return Certificate{}, fmt.Errorf("certificate %s: %w", row.Number, err)
 	}
 	hash, err := c.Record.Hash()
+	if err != nil {
+		return Certificate{}, fmt.Errorf("certificate %s: %w", row.Number, err)
+	}
+	if c.Record.Number != row.Number || !bytes.Equal(hash[:], row.Hash) {
+		return Certificate{}, fmt.Errorf("certificate %s: the signed record is that of %s", row.Number, c.Record.Number)
+	}
 	c.Code = proof.ShortCode(hash)
-	return c, err
+	return c, nil
 }
 
-// Certificates lists the papers of a batch.
-func (l *Lab) Certificates(ctx context.Context, a Actor, code string) ([]Certificate, error) {
+// Paper is a released paper without its record: for lists.
+type Paper struct {
+	Number     string
+	No         int // of the movement in its batch
+	Serial     string
+	Kind       string // "certificate", "rejection"
+	At         time.Time
+	By         string // who released it
+	Replaces   string
+	ReplacedBy string
+	RevokedAt  time.Time
+	Revoked    string // why
+}
+
+// Valid tells whether the paper was neither taken back nor replaced.
+func (p Paper) Valid() bool { return p.RevokedAt.IsZero() && p.ReplacedBy == "" }
+
+// Papers lists the papers of a batch in the order of its movements, revoked and replaced ones too.
+func (l *Lab) Papers(ctx context.Context, a Actor, code string) ([]Paper, error) {
 	if !a.May(RightCertificates) {
 		return nil, failure(KindForbidden, "not_allowed", "right", string(RightCertificates))
 	}
-	list, err := rows.CertificatesOf(ctx, l.pool, l.site, code)
+	var (
+		list []rows.Paper
+		b    = &pgx.Batch{}
+	)
+	rows.PapersOf(b, &list, l.site, code)
+	if err := rows.Run(ctx, l.pool, b); err != nil {
+		return nil, fmt.Errorf("papers of batch %s: %w", code, err)
+	}
+	out := make([]Paper, len(list))
+	for i, r := range list {
+		out[i] = Paper{Number: r.Number, No: int(r.No), Serial: r.Serial, Kind: r.Kind, At: r.At.UTC(), By: r.By, Replaces: value(r.Replaces),
+			ReplacedBy: value(r.ReplacedBy), RevokedAt: value(r.RevokedAt).UTC(), Revoked: value(r.Revoked)}
+	}
+	return out, nil
+}
+
+// Certificates opens the valid papers of a batch in the order of its movements, at most so many after
+// the movement with number after: a batch of 5,000 is printed in parts.
+func (l *Lab) Certificates(ctx context.Context, a Actor, code string, after, most int) ([]Certificate, error) {
+	if !a.May(RightCertificates) {
+		return nil, failure(KindForbidden, "not_allowed", "right", string(RightCertificates))
+	}
+	list, err := rows.CertificatesAfter(ctx, l.pool, l.site, code, int16(min(max(after, 0), math.MaxInt16)), most)
 	if err != nil {
 		return nil, fmt.Errorf("certificates of batch %s: %w", code, err)
 	}
@@ -319,23 +131,30 @@ func (l *Lab) Certificates(ctx context.Context, a Actor, code string) ([]Certifi
 // it, never the number alone, so that papers cannot be listed; a wrong code answers like a wrong
 // number.
 func (l *Lab) Verify(ctx context.Context, number, code string) (Certificate, error) {
-	unknown := failure(KindNotFound, "no_certificate", "number", number)
 	typed, err := proof.ParseShortCode(code)
 	if err != nil {
 		return Certificate{}, invalid("code", "paper_code_form")
 	}
+	unknown := failure(KindNotFound, "no_such_paper")
 	c, err := l.paper(ctx, strings.ToUpper(strings.TrimSpace(number)))
+	if KindOf(err) == KindNotFound {
+		return Certificate{}, unknown
+	}
 	if err != nil {
 		return Certificate{}, err
 	}
 	hash, err := c.Record.Hash()
-	if err != nil || !typed.Matches(hash) {
+	if err != nil {
+		return Certificate{}, err
+	}
+	if !typed.Matches(hash) {
 		return Certificate{}, unknown
 	}
 	return c, nil
 }
 
-// Revoke takes a paper back for a reason; it stays readable, marked.
+// Revoke takes a paper back for a reason; it stays readable, marked. The movement can then be
+// corrected and released again: the new paper names the one it replaces and this reason.
 func (l *Lab) Revoke(ctx context.Context, a Actor, number, reason string) error {
 	if reason = strings.TrimSpace(reason); reason == "" {
 		return invalid("reason", "needed")
@@ -355,5 +174,12 @@ func (l *Lab) Revoke(ctx context.Context, a Actor, number, reason string) error 
 	})
 }
 
-// paperNumber is the number of a movement's first paper: batch and number within it.
-func paperNumber(batch string, no int16) string { return fmt.Sprintf("%s-%04d", batch, no) }
+// paperNumber is the number of a movement's nth paper: batch and number within it, and from the
+// second paper on how many there were.
+func paperNumber(batch string, no int16, nth int) string {
+	number := fmt.Sprintf("%s-%04d", batch, no)
+	if nth > 1 {
+		number += "-" + strconv.Itoa(nth)
+	}
+	return number
+}

@@ -141,6 +141,8 @@ var taken = map[string]*Error{
 	"place_pkey":             {Kind: KindConflict, Code: "place_taken"},
 	"place_one_each":         {Kind: KindConflict, Code: "movement_placed_twice"},
 	"certificate_first_once": {Kind: KindConflict, Code: "released_already"},
+	"certificate_pkey":       {Kind: KindConflict, Code: "released_already"},
+	"revocation_pkey":        {Kind: KindConflict, Code: "revoked_already"},
 	"reading_pkey":           {Kind: KindConflict, Code: "reading_changed_meanwhile"},
 	"round_event_pkey":       {Kind: KindConflict, Code: "round_changed_meanwhile"},
 	"ending_pkey":            {Kind: KindConflict, Code: "end_changed_meanwhile"},

@@ -12,17 +12,20 @@ import (
 )
 
 // record freezes everything the paper prints. What nobody stated is said to be not stated.
-func (r *release) record(kind proof.Kind, m *rows.Movement, moved *Movement, judged *trial.Result) proof.Record {
-	rec := proof.Record{Schema: proof.SchemaName, SchemaVersion: proof.SchemaVersion, Kind: kind, Number: paperNumber(r.batch.Code, m.No), Title: paperTitle(kind),
+func (r *release) record(row *rows.Movement, w *weighed) proof.Record {
+	moved, judged, kind := &w.movement, &w.result, proof.Kind(w.Kind)
+	number, replaces, why := r.number(row.No)
+	rec := proof.Record{Schema: proof.SchemaName, SchemaVersion: proof.SchemaVersion, Kind: kind, Number: number, Title: paperTitle(kind),
+		Replaces: replaces, ReplaceReason: why,
 		Demo: r.house.Demo, Language: either2(r.batch.Language, either2(r.actor.Language, "en")), TimeZone: r.house.Zone.String(), IssuedAt: proof.At(r.now),
 		Laboratory: proof.Laboratory{Name: r.house.Title, Address: r.house.Address, Contact: r.house.Contact},
 		Movement:   r.subject(moved), Batch: r.batch.Code, Received: r.received(),
-		Trial: r.span(m), Programme: programmeRecord(&r.batch), Decision: decisionRecord(r.batch.Programme), Engine: r.lab.engine,
-		Days: r.days(moved.Rates), Readings: r.evidence(m.No), Criteria: r.criteria(judged), Failed: judged.Failed(),
+		Trial: r.span(row), Programme: programmeRecord(&r.batch), Decision: decisionRecord(r.batch.Programme), Engine: r.lab.engine,
+		Days: r.days(moved.Rates), Readings: r.evidence(row.No), Criteria: r.criteria(judged), Failed: judged.Failed(),
 		Verdict: proof.Verdict(judged.Verdict.String()), Remarks: r.remarksFor(moved.Serial),
 		Uncertainty: proof.Uncertainty{Reason: proof.NotStated}, Reference: proof.Statement{Code: proof.NotStated},
 		Conditions: proof.Conditions{Code: "nominal"}, Cautions: cautions(r.batch.Programme),
-		ReleasedBy: r.actor.Title, ReleasedAt: proof.At(r.now), JournalAct: r.act.ID.String(), VerifyURL: r.lab.verifyURL()}
+		ReleasedBy: r.actor.Title, ReleasedAt: proof.At(r.now), JournalAct: r.work.act.ID.String(), VerifyURL: r.lab.verifyURL()}
 	if moved.End != InTrial {
 		rec.Verdict, rec.End, rec.EndCause = proof.VerdictFail, string(moved.End), moved.Cause
 	}
@@ -34,6 +37,17 @@ func paperTitle(kind proof.Kind) string {
 		return "rate_certificate"
 	}
 	return "rejection_report"
+}
+
+// number is the number of the paper to come, and the revoked one it replaces with the reason.
+func (r *release) number(no int16) (number, replaces, why string) {
+	papers := r.papers[no]
+	number = paperNumber(r.batch.Code, no, len(papers)+1)
+	if len(papers) > 0 {
+		last := papers[len(papers)-1]
+		replaces, why = last.Number, value(last.Revoked)
+	}
+	return number, replaces, why
 }
 
 func (l *Lab) verifyURL() string {
@@ -87,8 +101,11 @@ func (r *release) span(m *rows.Movement) proof.Span {
 	if m.EndedAt != nil {
 		to = later(to, *m.EndedAt)
 	}
+	if from.After(r.now) {
+		from = r.now // ended before its first round was due
+	}
 	if to.After(r.now) {
-		to = r.now // a sender's clock ahead of ours
+		to = r.now
 	}
 	return proof.Span{From: proof.At(from), To: proof.At(to)}
 }
@@ -203,11 +220,17 @@ func limitText(e trial.Exact) proof.Decimal {
 	return proof.Decimal(e.String())
 }
 
+// remarksFor lists the remarks on the movement and on its whole batch, oldest first, each with what
+// was decided when it was closed.
 func (r *release) remarksFor(serial string) []proof.Remark {
 	var out []proof.Remark
-	for _, k := range r.remarks {
-		if k.Serial == serial {
-			out = append(out, proof.Remark{Code: k.Kind, Step: k.Step, Text: k.Words})
+	for _, k := range slices.Backward(r.remarks) {
+		if k.Serial != serial && k.Serial != "" {
+			continue
+		}
+		out = append(out, proof.Remark{Code: k.Kind, Step: k.Step, Text: k.Words})
+		if k.State == "closed" {
+			out = append(out, proof.Remark{Code: "decision", Step: k.Step, Text: k.Last})
 		}
 	}
 	return out
