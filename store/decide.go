@@ -49,7 +49,7 @@ type no struct {
 // of the call sees it.
 func (s *saving) decide(e *Entry) Answer {
 	it := &item{Entry: e}
-	for _, check := range []func(*item) *no{s.find, s.findStep, s.checkKind} {
+	for _, check := range []func(*item) *no{s.checkForm, s.find, s.findStep, s.checkKind} {
 		if why := check(it); why != nil {
 			return s.refuse(e, why.code, why.args...)
 		}
@@ -72,6 +72,18 @@ func (s *saving) decide(e *Entry) Answer {
 		return s.accept(it)
 	}
 	return s.judgePlausible(it)
+}
+
+// checkForm refuses what the reader of the call could not make sense of.
+func (s *saving) checkForm(it *item) *no {
+	if it.Wrong == nil {
+		return nil
+	}
+	why := &no{code: it.Wrong.Code}
+	for k, v := range it.Wrong.Args {
+		why.args = append(why.args, k, v)
+	}
+	return why
 }
 
 func (s *saving) find(it *item) *no {

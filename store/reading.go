@@ -86,6 +86,7 @@ type Entry struct {
 	Confirm  []string
 	Comma    bool // the field's language writes decimals with a comma
 	Raw      string
+	Wrong    *Error // what is wrong with its form: found by who read it, it is refused for it and kept
 }
 
 // Status is what became of an entry.
