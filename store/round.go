@@ -157,6 +157,7 @@ type Seat struct {
 	Code   Observation // in place of a value
 	Ended  End         // the hole stays a hole
 	Mine   bool        // read or entered by the actor: he may correct without a reason
+	Look   bool        // a second look was asked and not answered
 }
 
 // HolderRound is one holder within a round, drawn with its empty and blocked places.
@@ -189,6 +190,7 @@ func (l *Lab) RoundSheet(ctx context.Context, a Actor, code string, k int) (Roun
 		movements []rows.Movement
 		types     []rows.HolderType
 		readers   []rows.CellReader
+		looks     []rows.Looked
 		b         = &pgx.Batch{}
 	)
 	rows.FindBatch(b, &found, l.site, code)
@@ -196,6 +198,7 @@ func (l *Lab) RoundSheet(ctx context.Context, a Actor, code string, k int) (Roun
 	rows.MovementsOf(b, &movements, code, l.site)
 	rows.QueueHolderTypes(b, &types, l.site)
 	rows.ReadersOf(b, &readers, l.site, code, int16(min(k, 1000)))
+	rows.LooksAt(b, &looks, l.site, code, int16(min(k, 1000)))
 	if err := rows.Run(ctx, l.pool, b); err != nil {
 		return s, fmt.Errorf("round %d of batch %s: %w", k, code, err)
 	}
@@ -211,7 +214,22 @@ func (l *Lab) RoundSheet(ctx context.Context, a Actor, code string, k int) (Roun
 	}
 	s.Round = roundsOf(batch, events, nil)[k]
 	s.seat(a, movements, types, readers)
+	s.markLooks(looks)
 	return s, nil
+}
+
+// markLooks marks the seats whose second look is still to be taken.
+func (s *RoundSheet) markLooks(looks []rows.Looked) {
+	open := map[int]bool{}
+	for _, k := range looks {
+		open[int(k.No)] = true
+	}
+	for h := range s.Holders {
+		for i := range s.Holders[h].Seats {
+			seat := &s.Holders[h].Seats[i]
+			seat.Look = open[seat.No] && !seat.Read && seat.Ended == InTrial
+		}
+	}
 }
 
 // seat lays the movements into their holders.

@@ -215,6 +215,14 @@ func LooksOf(b *pgx.Batch, into *[]Look, batch uuid.UUID, no int16) {
 	list(b, into, `SELECT id, nth, batch, no, step, kind, value, typed, finding, at, by FROM look WHERE batch = $1 AND no = $2 ORDER BY step, at, nth`, batch, no)
 }
 
+// Looked is a movement for which a second look was asked.
+type Looked struct{ No int16 }
+
+// LooksAt queues the movements of a batch for which a second look was asked at a step.
+func LooksAt(b *pgx.Batch, into *[]Looked, site int16, batch string, step int16) {
+	list(b, into, `SELECT DISTINCT no FROM look WHERE batch = (SELECT id FROM batch WHERE site = $1 AND code = $2) AND step = $3`, site, batch, step)
+}
+
 // QueueLooks records values typed while a second look was asked; one already recorded stays.
 func QueueLooks(b *pgx.Batch, looks []Look, act uuid.UUID) {
 	for _, k := range looks {
