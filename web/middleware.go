@@ -20,15 +20,15 @@ import (
 	"ratehouse/web/words"
 )
 
-// policy lets a page load what this server sends and nothing else: no inline script or style, no
+// Policy lets a page load what this server sends and nothing else: no inline script or style, no
 // frame, no form to another place.
-const policy = "default-src 'none'; script-src 'self'; style-src 'self'; font-src 'self'; img-src 'self'; connect-src 'self'; " +
+const Policy = "default-src 'none'; script-src 'self'; style-src 'self'; font-src 'self'; img-src 'self'; connect-src 'self'; " +
 	"form-action 'self'; frame-ancestors 'none'; base-uri 'none'"
 
 func headers(next http.Handler) http.Handler {
 	return http.HandlerFunc(func(w http.ResponseWriter, r *http.Request) {
 		h := w.Header()
-		h.Set("Content-Security-Policy", policy)
+		h.Set("Content-Security-Policy", Policy)
 		h.Set("X-Content-Type-Options", "nosniff")
 		h.Set("Referrer-Policy", "same-origin")
 		h.Set("Cross-Origin-Opener-Policy", "same-origin")
@@ -134,10 +134,14 @@ func (s *server) identified(next http.Handler) http.Handler {
 	})
 }
 
-// needsSession leaves out what is the same for everybody: it must not cost a query.
+// needsSession leaves out what is the same for everybody and what carries its own token: neither may
+// cost a query. Links of pages to files of the API work with the session.
 func needsSession(r *http.Request) bool {
 	p := r.URL.Path
-	return !strings.HasPrefix(p, "/static/") && !strings.HasPrefix(p, "/api/") && p != page.HealthURL && p != page.ReadyURL
+	if strings.HasPrefix(p, apiPrefix) {
+		return r.Method == http.MethodGet && r.Header.Get("Authorization") == ""
+	}
+	return !strings.HasPrefix(p, "/static/") && p != page.HealthURL && p != page.ReadyURL
 }
 
 func (s *server) admit(c *page.Context, r *http.Request, a store.Actor) {

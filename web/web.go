@@ -12,6 +12,7 @@ import (
 	"github.com/go-chi/chi/v5"
 
 	"ratehouse/store"
+	"ratehouse/web/api"
 	"ratehouse/web/page"
 	"ratehouse/web/static"
 )
@@ -25,7 +26,10 @@ type Config struct {
 	BodyLimit      int64          // bytes of a request; 0: 1 MiB, and 10 MiB for uploads
 }
 
-const defaultBodyLimit = 1 << 20
+const (
+	defaultBodyLimit = 1 << 20
+	apiPrefix        = "/api/"
+)
 
 // server is the web side of one laboratory.
 type server struct {
@@ -37,6 +41,7 @@ type server struct {
 	limit   int64
 	tries   *tries
 	routes  []route
+	api     *api.API
 	nav     []page.NavItem
 	foreign *http.CrossOriginProtection
 }
@@ -69,8 +74,11 @@ func newServer(c Config) (*server, error) {
 			return nil, fmt.Errorf("public address: %w", err)
 		}
 	}
+	// The API takes no cookie for anything that changes something, so no other site can misuse one.
+	s.foreign.AddInsecureBypassPattern(apiPrefix)
 	s.foreign.SetDenyHandler(http.HandlerFunc(page.ShowForeign))
 	s.routes = s.table()
+	s.api = api.New(api.Config{Lab: c.Lab, Logger: c.Logger, Limit: c.BodyLimit})
 	s.nav = s.navigation()
 	return s, nil
 }
@@ -80,14 +88,28 @@ func newServer(c Config) (*server, error) {
 func (s *server) handler() chi.Router {
 	r := chi.NewRouter()
 	r.Use(s.number, s.logged, s.recovered, headers, s.limited, s.identified, s.foreign.Handler)
-	r.NotFound(s.adapt(func(http.ResponseWriter, *http.Request) error { return page.NotFound() }).ServeHTTP)
-	r.MethodNotAllowed(page.ShowMethod)
+	r.NotFound(byPart(s.adapt(func(http.ResponseWriter, *http.Request) error { return page.NotFound() }).ServeHTTP, s.api.NotFound))
+	r.MethodNotAllowed(byPart(page.ShowMethod, s.api.MethodNotAllowed))
 	for _, one := range s.routes {
 		r.Method(one.method, one.pattern, s.guarded(one))
+	}
+	for _, one := range s.api.Routes() {
+		r.Method(one.Method, one.Pattern, one.Handle)
 	}
 	r.Method(http.MethodGet, static.Prefix+"*", static.Handler())
 	r.Method(http.MethodHead, static.Prefix+"*", static.Handler())
 	return r
+}
+
+// byPart answers with a page, and below the API's addresses with a problem.
+func byPart(pages, api http.HandlerFunc) http.HandlerFunc {
+	return func(w http.ResponseWriter, r *http.Request) {
+		if strings.HasPrefix(r.URL.Path, apiPrefix) {
+			api(w, r)
+			return
+		}
+		pages(w, r)
+	}
 }
 
 func (s *server) adapt(h page.Handler) http.Handler {

@@ -9,6 +9,7 @@ import (
 
 // Criteria is the table of everything a movement is judged by.
 type Criteria struct {
+	Name string // of the table for screen readers: unique on its page
 	Unit string // of most criteria; the others name theirs
 	Rows []CriterionRow
 }
@@ -23,11 +24,11 @@ type CriterionRow struct {
 	Gauge                  Gauge
 }
 
-// CriteriaOf makes the table from a result of the judge. more is how many decimals beyond those of the
-// programme are shown: 1 on screen (words.Decimals decides), 0 on paper.
+// CriteriaOf makes the table from a result of the judge. Papers show the programme's own decimals, the
+// screen those of words.Decimals.
 func CriteriaOf(p *words.Printer, j *trial.Judge, res *trial.Result, onPaper bool) Criteria {
 	crit := j.Programme().Criteria
-	c := Criteria{Unit: commonUnit(crit), Rows: make([]CriterionRow, len(crit))}
+	c := Criteria{Name: p.Say(words.Criteria), Unit: commonUnit(crit), Rows: make([]CriterionRow, len(crit))}
 	for i, k := range crit {
 		l, v := j.Limit(i), res.Values[i]
 		places := words.Decimals(k)

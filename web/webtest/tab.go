@@ -264,12 +264,13 @@ func (b *Tab) Resize(s Size) {
 	b.Do(chromedp.EmulateViewport(int64(s.Width), int64(s.Height), opts...))
 }
 
-// media sets what the styles are asked for: "print" or "" and "dark" or "light".
+// media sets what the styles are asked for: "print" or "" and "dark" or "light"; never with motion, so
+// that no picture or contrast is taken half way.
 func (b *Tab) media(kind, scheme string) {
 	b.T.Helper()
 	b.Do(chromedp.Func(func(ctx context.Context, t *chromedp.Target) error {
 		_, err := cdp.Call(ctx, t, emulation.SetEmulatedMedia, emulation.SetEmulatedMediaParams{Media: kind,
-			Features: []*emulation.MediaFeature{{Name: "prefers-color-scheme", Value: scheme}}})
+			Features: []*emulation.MediaFeature{{Name: "prefers-color-scheme", Value: scheme}, {Name: "prefers-reduced-motion", Value: "reduce"}}})
 		return err
 	}))
 }

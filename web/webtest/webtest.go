@@ -122,6 +122,7 @@ func Start(t testing.TB, base string) *Tab {
 		tab.finish()
 	})
 	tab.Resize(Wide)
+	tab.Dark(false)
 	return tab
 }
 

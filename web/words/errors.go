@@ -51,13 +51,6 @@ func fault(code, en, fr, de string) struct{} {
 	return struct{}{}
 }
 
-var _ = []struct{}{
-	fault("not_found", "There is no such thing.", "Cela n’existe pas.", "Das gibt es nicht."),
-	fault("forbidden", "Your account has no right to do this.", "Votre compte n’a pas le droit de faire cela.", "Ihr Konto hat kein Recht dazu."),
-	fault("unauthenticated", "Please sign in.", "Veuillez vous connecter.", "Bitte melden Sie sich an."),
-	fault("bad_credentials", "This account and this password do not belong together. Check both; capital letters count in the password.", "Ce compte et ce mot de passe ne vont pas ensemble. Vérifiez les deux ; les majuscules comptent dans le mot de passe.", "Dieses Konto und dieses Passwort gehören nicht zusammen. Prüfen Sie beides; im Passwort zählt Groß- und Kleinschreibung."),
-}
-
 // Fault says a refusal by its code and named arguments, as store.Error carries them.
 func (p *Printer) Fault(code string, args map[string]string) string {
 	e := faults[code]

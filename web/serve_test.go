@@ -1,0 +1,68 @@
+package web
+
+import (
+	"context"
+	"net"
+	"net/http"
+	"testing"
+)
+
+func TestRequestUnderWayIsFinished(t *testing.T) {
+	t.Parallel()
+	ln, err := net.Listen("tcp", "127.0.0.1:0")
+	if err != nil {
+		t.Fatal(err)
+	}
+	begun, goOn := make(chan struct{}), make(chan struct{})
+	h := http.HandlerFunc(func(w http.ResponseWriter, r *http.Request) {
+		close(begun)
+		<-goOn
+		if r.Context().Err() == nil {
+			w.WriteHeader(http.StatusOK)
+		} else {
+			w.WriteHeader(http.StatusServiceUnavailable)
+		}
+	})
+	ctx, cancel := context.WithCancel(t.Context())
+	ended := make(chan error, 1)
+	go func() { ended <- Serve(ctx, ln, h) }()
+	status := make(chan int, 1)
+	go func() {
+		res, err := http.Get("http://" + ln.Addr().String())
+		if err != nil {
+			status <- 0
+			return
+		}
+		res.Body.Close()
+		status <- res.StatusCode
+	}()
+	<-begun
+	cancel()
+	select {
+	case err := <-ended:
+		t.Fatalf("Serve returned %v with a request under way", err)
+	default:
+	}
+	close(goOn)
+	if got := <-status; got != 200 {
+		t.Errorf("the request under way got %d, want 200", got)
+	}
+	if err := <-ended; err != nil {
+		t.Errorf("Serve returned %v, want nil", err)
+	}
+	if _, err := net.Dial("tcp", ln.Addr().String()); err == nil {
+		t.Error("the port still answers")
+	}
+}
+
+func TestBrokenListener(t *testing.T) {
+	t.Parallel()
+	ln, err := net.Listen("tcp", "127.0.0.1:0")
+	if err != nil {
+		t.Fatal(err)
+	}
+	ln.Close()
+	if err := Serve(t.Context(), ln, http.NotFoundHandler()); err == nil {
+		t.Error("a broken listener gave no error")
+	}
+}
