@@ -38,11 +38,11 @@ func NewForm(c *Context, labels ...Label) *Form {
 // no form.
 func ReadForm(r *http.Request, labels ...Label) (*Form, error) {
 	f := NewForm(Of(r), labels...)
-	err := r.ParseMultipartForm(1 << 20)
-	if errors.Is(err, http.ErrNotMultipart) {
-		err = r.ParseForm()
+	parse := r.ParseForm
+	if strings.HasPrefix(r.Header.Get("Content-Type"), "multipart/form-data") {
+		parse = func() error { return r.ParseMultipartForm(1 << 20) }
 	}
-	if err != nil {
+	if err := parse(); err != nil {
 		if _, ok := errors.AsType[*http.MaxBytesError](err); ok {
 			return nil, err
 		}
