@@ -150,7 +150,7 @@ func Frame(c *Context, s Sheet) templ.Component {
 				return templ_7745c5c3_Err
 			}
 		}
-		for _, u := range styles() {
+		for _, u := range styles(s) {
 			templ_7745c5c3_Err = templruntime.WriteString(templ_7745c5c3_Buffer, 9, "<link rel=\"stylesheet\" href=\"")
 			if templ_7745c5c3_Err != nil {
 				return templ_7745c5c3_Err

@@ -23,6 +23,7 @@ type Sheet struct {
 	Door    bool     // a small sheet: signing in, faults
 	Bare    bool     // papers lie on the bench: no sheet, no title block; the content brings its own h1
 	Scripts []string // modules by name, "round.js"
+	Styles  []string // style sheets of these pages alone, by name, "desk.css"
 }
 
 // Link is a word that leads somewhere.
@@ -103,8 +104,12 @@ func mainClass(s Sheet) string {
 	return "sheet"
 }
 
-func styles() []string {
-	return []string{static.URL("tokens.css"), static.URL("base.css"), static.URL("print.css")}
+func styles(s Sheet) []string {
+	urls := []string{static.URL("tokens.css"), static.URL("base.css")}
+	for _, name := range s.Styles {
+		urls = append(urls, static.URL(name))
+	}
+	return append(urls, static.URL("print.css"))
 }
 
 func fonts() []string {
