@@ -34,14 +34,15 @@ func endOf(n int16) End { return ends[n] }
 
 // Movement is one movement of a batch with its readings by day.
 type Movement struct {
-	No      int
-	Serial  string
-	Attempt int
-	Holder  string
-	Place   int
-	Rates   []trial.Rate // by programme day, assembled from what was read
-	Codes   []Observation
-	Read    int // steps that have a value or an observation
+	No         int
+	Serial     string
+	Attempt    int
+	Holder     string
+	HolderType string // its code
+	Place      int
+	Rates      []trial.Rate // by programme day, assembled from what was read
+	Codes      []Observation
+	Read       int // steps that have a value or an observation
 
 	End     End
 	Cause   string
@@ -140,7 +141,7 @@ func countReads(b *Batch, movements []rows.Movement) []rows.Read {
 }
 
 func movementOf(b *Batch, r *rows.Movement) Movement {
-	m := Movement{No: int(r.No), Serial: r.Serial, Attempt: int(r.Attempt), Holder: value(r.HolderCode), Place: int(value(r.Place)),
+	m := Movement{No: int(r.No), Serial: r.Serial, Attempt: int(r.Attempt), Holder: value(r.HolderCode), HolderType: value(r.HolderType), Place: int(value(r.Place)),
 		End: endOf(r.Ended), Cause: value(r.Cause), EndCode: observation(value(r.EndCode)), EndStep: int(value(r.EndStep)),
 		EndedAt: value(r.EndedAt).UTC(), Paper: value(r.Certificate), PaperKind: value(r.PaperKind),
 		Corrections: corrections(&r.Series), Remarks: int(r.Remarks), series: r.Series}
