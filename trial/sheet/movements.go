@@ -3,6 +3,7 @@ package sheet
 import (
 	"fmt"
 	"io"
+	"math"
 	"strconv"
 	"strings"
 
@@ -137,12 +138,14 @@ func (m *Movements) readCells(fault **Refusal, place *int) {
 		v, ok := quickMilli(cell)
 		if !ok {
 			var r *Refusal
-			if v, r = parseNumber(cell, comma); r != nil {
+			if v, r = parseNumber(cell, comma); r != nil && r.Code != TooLarge {
 				m.worse(fault, place, at, r)
 				continue
+			} else if r != nil {
+				v = math.MaxInt64 // beyond every bound; the message shows the cell
 			}
 		}
-		if r := m.bound(v); r != nil {
+		if r := m.bound(v, cell); r != nil {
 			m.worse(fault, place, at, r)
 			continue
 		}
@@ -172,12 +175,19 @@ func (m *Movements) readCategory(fault **Refusal, place *int) {
 }
 
 // bound checks the size of a rate or state.
-func (m *Movements) bound(v int64) *Refusal {
+func (m *Movements) bound(v int64, cell []byte) *Refusal {
+	if -mostRate <= v && v <= mostRate {
+		return nil
+	}
+	shown := trial.Milli(v).String()
+	if v == math.MaxInt64 {
+		shown = strings.Trim(Visible(string(cell)), `"`)
+	}
 	switch {
 	case m.states && (v > HalfDial || v < -HalfDial):
-		return refuse(StateBeyond, trial.Milli(v).String(), trial.Milli(HalfDial).String())
-	case !m.states && (v > mostRate || v < -mostRate):
-		return refuse(Beyond, trial.Milli(v).String(), "600", "s/d")
+		return refuse(StateBeyond, shown, trial.Milli(HalfDial).String())
+	case !m.states:
+		return refuse(Beyond, shown, "600", "s/d")
 	}
 	return nil
 }

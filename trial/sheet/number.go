@@ -109,7 +109,7 @@ func exactMilli(b, whole, part []byte, neg bool) (int64, *Refusal) {
 	}
 	whole = bytes.TrimLeft(whole, "0")
 	if len(whole) > 15 {
-		return 0, refuse(Beyond, Visible(string(b)), "10^15", "")
+		return 0, refuse(TooLarge, Visible(string(b)))
 	}
 	var v int64
 	for _, c := range whole {

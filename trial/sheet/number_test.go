@@ -31,7 +31,7 @@ func TestNumbers(t *testing.T) {
 		{"0000000000000000000001.5", 1500, 1500, "", ""},
 		{"600", 600_000, 600_000, "", ""},
 		{"999999999999999", 999_999_999_999_999_000, 999_999_999_999_999_000, "", ""},
-		{"1000000000000000", none, none, Beyond, Beyond},
+		{"1000000000000000", none, none, TooLarge, TooLarge},
 		{"1.2341", none, none, TooFine, TooFine},
 		{"0.00049999999999999999999", none, none, TooFine, TooFine},
 		{"1,5", none, 1500, DecimalComma, ""},

@@ -18,6 +18,7 @@ const (
 	SignApart      Code = "sign_apart"
 	TooFine        Code = "too_fine"
 	Beyond         Code = "beyond"
+	TooLarge       Code = "too_large"
 	DecimalComma   Code = "decimal_comma"
 	AmbiguousComma Code = "ambiguous_comma"
 	Grouping       Code = "grouping"
@@ -51,6 +52,7 @@ var texts = map[Code]string{
 	Exponent:       "%s has an exponent; write the number out",
 	SignApart:      "%s has its sign apart from its digits",
 	TooFine:        "%s is finer than 0.001; nothing is rounded",
+	TooLarge:       "%s has more than 15 digits before the point",
 	Beyond:         "%s is beyond ±%s %s",
 	DecimalComma:   "%s has a decimal comma, which only files separated by semicolon or tab may use",
 	AmbiguousComma: "%s is ambiguous: its comma may be a decimal comma or a thousands separator",

@@ -61,7 +61,7 @@ func (t *table) header(line []byte, columns []column) error {
 	for i, cell := range t.cells {
 		name := string(cell)
 		shown := name
-		if name == "" || strings.Trim(name, "abcdefghijklmnopqrstuvwxyz0123456789_") != "" {
+		if name == "" || strings.ContainsAny(name, ` ,:;"`) || Visible(name) != `"`+name+`"` {
 			shown = Visible(name)
 		}
 		if !slices.ContainsFunc(columns, func(c column) bool { return c.name == name }) {

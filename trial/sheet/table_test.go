@@ -90,7 +90,7 @@ func TestTableRefusals(t *testing.T) {
 		{"empty", "", "line 1, column serial: the file is empty; a header is required"},
 		{"blank lines only", " \n\t\n", "line 1, column serial: the file is empty; a header is required"},
 		{"BOM only", "\ufeff", "line 1, column serial: the file is empty; a header is required"},
-		{"upper case", "Serial,a\n", `line 1, column "Serial": the column is not known here (serial, a, b)`},
+		{"upper case", "Serial,a\n", `line 1, column Serial: the column is not known here (serial, a, b)`},
 		{"unnamed", "serial,a,\n", `line 1, column "": the column is not known here (serial, a, b)`},
 		{"twice", "serial,a,a\n", "line 1, column a: the column appears twice"},
 		{"missing", "serial,b\n", "line 1, column a: the column is missing"},
