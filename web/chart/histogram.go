@@ -236,12 +236,10 @@ func (d Distribution) edgePlaces() int {
 }
 
 func (v *histogramView) limitsAndTicks(p *words.Printer, x Scale, from, to float64) {
-	if v.HasMin {
+	if v.HasMin && v.MinText != "" {
 		at := x.At(v.Min)
 		v.zones = append(v.zones, rect{px(histLeft), px(histTop), px(at - histLeft), px(histFoot - histTop), "bout"})
-		if v.MinText != "" {
-			v.limits = append(v.limits, namedX{px(at), p.Say(words.ChartLimit.With(v.MinText))})
-		}
+		v.limits = append(v.limits, namedX{px(at), p.Say(words.ChartLimit.With(v.MinText))})
 	}
 	if v.HasMax {
 		at := x.At(v.Max)

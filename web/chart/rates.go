@@ -13,7 +13,7 @@ import (
 // it and RatesChart draws it.
 type Rates struct {
 	Serial        string
-	Width, Height float64 // in pixels of the column it is shown in; 0: of a desk page
+	Width, Height float64 // in pixels of the column it is shown in; 0: a page that may be wide or narrow
 	Days          []RateDay
 	Lines         []RateLine
 	Mean          *Mean
@@ -213,13 +213,18 @@ type (
 	oldPoint struct{ D, X, Y, Text string }
 )
 
-const deskWidth, deskHeight = 1340, 350
+const (
+	deskWidth, deskHeight = 1340, 350
+	leafWidth, leafHeight = 760, 300
+)
+
+func (c Rates) sized(width, height float64) Rates {
+	c.Width, c.Height = width, height
+	return c
+}
 
 func (c Rates) view(p *words.Printer) ratesView {
-	if c.Width == 0 {
-		c.Width, c.Height = deskWidth, deskHeight
-	}
-	v := ratesView{Rates: c, left: 44, right: c.Width - 118, top: 44, bottom: c.Height - 44, far: c.Width - 104}
+	v := ratesView{Rates: c, left: 44, right: c.Width - 92, top: 44, bottom: c.Height - 44, far: c.Width - 78}
 	v.foot = v.bottom + 15
 	v.box = "0 0 " + strconv.Itoa(int(c.Width)) + " " + strconv.Itoa(int(c.Height))
 	lo, hi := c.span()

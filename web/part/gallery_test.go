@@ -91,7 +91,7 @@ func lot(t testing.TB, j *trial.Judge, n int) []trial.Result {
 	}
 	out := make([]trial.Result, n)
 	for i := range out {
-		base := 1400 + next()*6/5
+		base := 1400 + next()*2
 		var r []trial.Rate
 		for range 15 {
 			r = append(r, trial.RateOf(base+next()/2))

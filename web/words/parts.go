@@ -173,5 +173,5 @@ var (
 	MoveThen      = say("then", "puis", "dann")
 	MoveStay      = say("stay", "reste", "bleibt")
 	MoveEnd       = say("then the trial ends", "puis l’épreuve est finie", "dann endet die Prüfung")
-	WithAccessory = say("chronograph", "chronographe", "Chronograph")
+	WithAccessory = say("chrono", "chrono", "Chrono")
 )
