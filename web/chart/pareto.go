@@ -69,7 +69,7 @@ type paretoBar struct {
 	Class                string
 }
 
-const paretoLeft, paretoWidth = 196.0, 140.0
+const paretoLeft, paretoWidth = 216.0, 122.0
 
 func (c Pareto) view(p *words.Printer) paretoView {
 	most := 1
