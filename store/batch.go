@@ -389,8 +389,8 @@ func plannedSteps(p *trial.Programme) []trial.Step {
 	return steps
 }
 
-func (l *Lab) batchOf(ctx context.Context, r rows.Batch) (Batch, error) {
-	p, err := l.programme(ctx, r.Programme)
+func (l *Lab) batchOf(ctx context.Context, db rows.Reader, r rows.Batch) (Batch, error) {
+	p, err := l.programme(ctx, db, r.Programme)
 	if err != nil {
 		return Batch{}, err
 	}
@@ -421,7 +421,7 @@ func (l *Lab) Batch(ctx context.Context, a Actor, code string) (Batch, error) {
 	if len(found) == 0 {
 		return Batch{}, failure(KindNotFound, "no_batch", "code", code)
 	}
-	return l.batchOf(ctx, found[0])
+	return l.batchOf(ctx, l.pool, found[0])
 }
 
 // PiecesOf reads an intake list: one number a line, or a table with a header serial[,place]. Its

@@ -102,7 +102,7 @@ func (l *Lab) Batches(ctx context.Context, a Actor, f BatchFilter, cursor string
 	}
 	batches := make([]*Batch, len(found))
 	for i := range found {
-		b, err := l.batchOf(ctx, found[i])
+		b, err := l.batchOf(ctx, l.pool, found[i])
 		if err != nil {
 			return list, err
 		}

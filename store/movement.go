@@ -99,7 +99,7 @@ func (l *Lab) BatchSheet(ctx context.Context, a Actor, code string) (BatchSheet,
 	if len(found) == 0 {
 		return s, failure(KindNotFound, "no_batch", "code", code)
 	}
-	batch, err := l.batchOf(ctx, found[0])
+	batch, err := l.batchOf(ctx, l.pool, found[0])
 	if err != nil {
 		return s, err
 	}
@@ -273,7 +273,7 @@ func (l *Lab) movementSheet(ctx context.Context, db rows.Reader, code, serial st
 		return s, failure(KindNotFound, "no_movement", "code", code, "serial", serial)
 	}
 	var err error
-	if s.Batch, err = l.batchOf(ctx, batches[0]); err != nil {
+	if s.Batch, err = l.batchOf(ctx, db, batches[0]); err != nil {
 		return s, err
 	}
 	s.Movement = movementOf(&s.Batch, &found[0])

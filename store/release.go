@@ -68,7 +68,7 @@ func (l *Lab) Releasable(ctx context.Context, a Actor, code string) (ReleaseList
 	if err := rows.Run(ctx, l.pool, b); err != nil {
 		return ReleaseList{}, fmt.Errorf("what batch %s can release: %w", code, err)
 	}
-	if err := d.open(ctx, code); err != nil {
+	if err := d.open(ctx, l.pool, code); err != nil {
 		return ReleaseList{}, err
 	}
 	list := ReleaseList{Batch: d.batch, CanSign: !l.key.IsZero(), Movements: make([]Releasable, len(d.rows))}
@@ -179,12 +179,12 @@ func (d *dossier) queue(b *pgx.Batch, code string, serials []string) {
 }
 
 // open puts what was read in order.
-func (d *dossier) open(ctx context.Context, code string) error {
+func (d *dossier) open(ctx context.Context, db rows.Reader, code string) error {
 	if len(d.found) == 0 {
 		return failure(KindNotFound, "no_batch", "code", code)
 	}
 	var err error
-	if d.batch, err = d.lab.batchOf(ctx, d.found[0]); err != nil {
+	if d.batch, err = d.lab.batchOf(ctx, db, d.found[0]); err != nil {
 		return err
 	}
 	if len(d.cards) == 1 {
@@ -323,7 +323,7 @@ func (r *release) look(ctx context.Context, code string, serials []string) error
 	if err := r.work.read(ctx, b); err != nil {
 		return err
 	}
-	if err := r.open(ctx, code); err != nil {
+	if err := r.open(ctx, r.work.conn, code); err != nil {
 		return err
 	}
 	r.by, r.readings = map[string]*rows.Movement{}, map[int16][]rows.SeenReading{}

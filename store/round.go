@@ -82,7 +82,7 @@ func (l *Lab) Today(ctx context.Context, a Actor) (Today, error) {
 		return t, fmt.Errorf("today: %w", err)
 	}
 	for _, row := range batches {
-		batch, err := l.batchOf(ctx, row)
+		batch, err := l.batchOf(ctx, l.pool, row)
 		if err != nil {
 			return t, err
 		}
@@ -205,7 +205,7 @@ func (l *Lab) RoundSheet(ctx context.Context, a Actor, code string, k int) (Roun
 	if len(found) == 0 {
 		return s, failure(KindNotFound, "no_batch", "code", code)
 	}
-	batch, err := l.batchOf(ctx, found[0])
+	batch, err := l.batchOf(ctx, l.pool, found[0])
 	if err != nil {
 		return s, err
 	}

@@ -126,7 +126,7 @@ func (s *saving) keepBatches(ctx context.Context, batches []rows.Batch, series [
 	s.batches, s.series = map[string]*Batch{}, map[[2]string]*rows.Series{}
 	codes := map[uuid.UUID]string{}
 	for _, r := range batches {
-		b, err := s.lab.batchOf(ctx, r)
+		b, err := s.lab.batchOf(ctx, s.conn, r)
 		if err != nil {
 			return err
 		}

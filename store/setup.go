@@ -291,15 +291,16 @@ func (l *Lab) learn(r rows.Programme) (*trial.Programme, error) {
 	return p, nil
 }
 
-// programme is the programme with that content hash.
-func (l *Lab) programme(ctx context.Context, hash []byte) (*trial.Programme, error) {
+// programme is the programme with that content hash, read through the connection at hand: asking
+// the pool for another one while holding one would starve under load.
+func (l *Lab) programme(ctx context.Context, db rows.Reader, hash []byte) (*trial.Programme, error) {
 	l.mu.RLock()
 	p := l.programmes[[32]byte(hash)]
 	l.mu.RUnlock()
 	if p != nil {
 		return p, nil
 	}
-	r, err := rows.ProgrammeByHash(ctx, l.pool, l.site, hash)
+	r, err := rows.ProgrammeByHash(ctx, db, l.site, hash)
 	if err != nil {
 		return nil, fmt.Errorf("programme %x: %w", hash, err)
 	}

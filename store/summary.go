@@ -191,7 +191,7 @@ func (l *Lab) summarise(ctx context.Context, batch uuid.UUID) error {
 	}
 	batches := make([]*Batch, len(found))
 	for i := range found {
-		one, err := l.batchOf(ctx, found[i])
+		one, err := l.batchOf(ctx, l.pool, found[i])
 		if err != nil {
 			return err
 		}
