@@ -9,6 +9,7 @@ import (
 	"errors"
 	"fmt"
 	"regexp"
+	"strconv"
 	"strings"
 	"time"
 	"unicode/utf8"
@@ -139,7 +140,7 @@ func (l *Lab) LogIn(ctx context.Context, name, password string) (token string, a
 	}
 	secret := value(found.Secret)
 	if secret == "" {
-		secret = nobody
+		secret = l.nobody()
 	}
 	ok, err := l.checkPassword(ctx, secret, password)
 	if err != nil {
@@ -204,45 +205,49 @@ func (l *Lab) SetLanguage(ctx context.Context, a Actor, language string) error {
 	})
 }
 
-// argon2id with 64 MiB, one pass, two lanes: 44 ms on the reference machine (platform notes).
+// argon2id with 64 MiB, one pass, two lanes: 44 ms on the reference machine (platform notes). What a
+// secret was made with stands in it, so that the cost can be raised later.
 const argonTime, argonMemory, argonLanes, argonKey = 1, 64 * 1024, 2, 32
 
-// nobody is a hash that no password has; checked when the name is unknown.
-const nobody = "argon2id$AAAAAAAAAAAAAAAAAAAAAA$AAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAA"
+// nobody is a secret that no password opens; checked when the name is unknown.
+func (l *Lab) nobody() string {
+	return fmt.Sprintf("argon2id$%d$AAAAAAAAAAAAAAAAAAAAAA$AAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAA", l.memory)
+}
 
 func (l *Lab) hashPassword(ctx context.Context, password string) (string, error) {
 	salt := make([]byte, 16)
 	rand.Read(salt)
-	key, err := l.argonKey(ctx, password, salt)
+	key, err := l.argonKey(ctx, password, salt, l.memory)
 	if err != nil {
 		return "", err
 	}
 	e := base64.RawStdEncoding
-	return "argon2id$" + e.EncodeToString(salt) + "$" + e.EncodeToString(key), nil
+	return fmt.Sprintf("argon2id$%d$%s$%s", l.memory, e.EncodeToString(salt), e.EncodeToString(key)), nil
 }
 
 func (l *Lab) checkPassword(ctx context.Context, secret, password string) (bool, error) {
 	parts := strings.Split(secret, "$")
-	if len(parts) != 3 || parts[0] != "argon2id" || utf8.RuneCountInString(password) > passwordMost {
+	if len(parts) != 4 || parts[0] != "argon2id" || utf8.RuneCountInString(password) > passwordMost {
 		return false, nil
 	}
-	salt, err1 := base64.RawStdEncoding.DecodeString(parts[1])
-	want, err2 := base64.RawStdEncoding.DecodeString(parts[2])
-	if err := errors.Join(err1, err2); err != nil {
+	memory, err0 := strconv.ParseUint(parts[1], 10, 32)
+	salt, err1 := base64.RawStdEncoding.DecodeString(parts[2])
+	want, err2 := base64.RawStdEncoding.DecodeString(parts[3])
+	if err := errors.Join(err0, err1, err2); err != nil {
 		return false, fmt.Errorf("stored secret: %w", err)
 	}
-	key, err := l.argonKey(ctx, password, salt)
+	key, err := l.argonKey(ctx, password, salt, uint32(memory))
 	return err == nil && subtle.ConstantTimeCompare(key, want) == 1, err
 }
 
-func (l *Lab) argonKey(ctx context.Context, password string, salt []byte) ([]byte, error) {
+func (l *Lab) argonKey(ctx context.Context, password string, salt []byte, memory uint32) ([]byte, error) {
 	select {
 	case l.argon <- struct{}{}:
 		defer func() { <-l.argon }()
 	case <-ctx.Done():
 		return nil, ctx.Err()
 	}
-	return argon2.IDKey([]byte(password), salt, argonTime, argonMemory, argonLanes, argonKey), nil
+	return argon2.IDKey([]byte(password), salt, argonTime, memory, argonLanes, argonKey), nil
 }
 
 func optional(s string) *string {

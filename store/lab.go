@@ -22,6 +22,7 @@ type Config struct {
 	Engine string           // build of the engine, frozen on papers and carried by derived tables
 	Key    proof.Key        // signs papers; zero: this program cannot release
 	URL    string           // public base of the service, for the address on papers; may be empty
+	Memory uint32           // KiB that hashing a password takes; 0: 64 MiB. Tests take less.
 	Conns  int32            // at most this many connections; 0: the driver's default
 	Dial   pgconn.DialFunc  // nil: the driver's; tests count round trips here
 }
@@ -50,6 +51,7 @@ type Lab struct {
 	engine     string
 	key        proof.Key
 	url        string
+	memory     uint32
 	house      House
 	argon      chan struct{} // 64 MiB each: only a few at once
 	mu         sync.RWMutex
@@ -79,6 +81,9 @@ func Open(ctx context.Context, c Config) (*Lab, error) {
 	l := &Lab{
 		pool: pool, clock: c.Clock, engine: c.Engine, key: c.Key, url: c.URL, argon: make(chan struct{}, 2),
 		programmes: map[[32]byte]*trial.Programme{}, wake: make(chan struct{}, 1),
+	}
+	if l.memory = c.Memory; l.memory == 0 {
+		l.memory = argonMemory
 	}
 	if l.clock == nil {
 		l.clock = time.Now

@@ -67,7 +67,7 @@ func Open(t testing.TB, db DB, clock *Clock) *House {
 	if err != nil {
 		t.Fatal(err)
 	}
-	lab, err := store.Open(t.Context(), store.Config{DSN: db.App, Clock: clock.Now, Engine: "test", Key: key, Conns: 20})
+	lab, err := store.Open(t.Context(), store.Config{DSN: db.App, Clock: clock.Now, Engine: "test", Key: key, Conns: 20, Memory: 64})
 	if err != nil {
 		t.Fatal(err)
 	}
