@@ -23,7 +23,7 @@ var (
 	RoundStart      = say("Start", "Commencer", "Beginnen")
 	RoundGoOn       = say("Go on", "Continuer", "Weiter")
 	RoundLook       = say("Look", "Voir", "Ansehen")
-	RoundOfBatch    = say2("{act} round {k}", "{act} tournée {k}", "{act} Runde {k}").unsure(FR, DE)
+	RoundAndCode    = say2("round {k} of {code}", "tournée {k} de {code}", "Runde {k} von {code}").unsure(FR, DE)
 	MovementsReadIn = say1("Movements read in batch {code}", "Mouvements relevés du lot {code}", "Abgelesene Werke des Loses {code}")
 	ReadOfMore      = say2("{read}, {more}", "{read}, {more}", "{read}, {more}")
 	OutOfTrial      = plural("{n} out of the trial", "{n} out of the trial", "{n} hors de l’épreuve", "{n} hors de l’épreuve", "{n} nicht mehr in der Prüfung", "{n} nicht mehr in der Prüfung")

@@ -303,7 +303,6 @@ function start() {
 
   draw.onChoose((p) => select(p));
   draw.onHolder((i) => select(places.first(i)));
-  draw.counts();
   queue.ready.then(() => {
     for (const entry of queue.pending()) {
       const p = places.serial(entry.item.serial);
@@ -322,7 +321,7 @@ function createDrawing() {
   function bind(i) {
     for (const el of document.querySelectorAll(`[data-holder="${i}"] [data-place]`)) {
       const p = places.find(i, Number(el.dataset.place));
-      if (!p) continue;
+      if (!p || p.state === "empty") continue;
       elements.set(p, el);
       el.addEventListener("click", (e) => {
         e.preventDefault();
@@ -341,7 +340,7 @@ function createDrawing() {
       const on = tab.dataset.tab === String(p.holder);
       if (on) tab.setAttribute("aria-current", "step");
       else tab.removeAttribute("aria-current");
-      if (on) tab.scrollIntoView({ block: "nearest" });
+      if (on && tab.parentElement.scrollHeight > tab.parentElement.clientHeight) tab.scrollIntoView({ block: "nearest" });
     }
     which(p.holder);
   }
@@ -372,7 +371,7 @@ function createDrawing() {
       ...(s.word ? [part(p.state === "off" ? "" : "val", s.word)] : []),
       part("mono", p.short ?? ""),
     );
-    counts();
+    count(p.holder);
   }
 
   function part(name, text, hidden = true) {
@@ -398,17 +397,15 @@ function createDrawing() {
     return looks ? say("andLooks", { read: text, n: looks }) : text;
   }
 
-  function counts() {
-    model.holders.forEach((h, i) => {
-      const c = places.counts(places.of(i));
-      const tab = document.querySelector(`[data-tab="${i}"]`);
-      tab.className = c.read >= c.all ? "full" : c.read > 0 ? "begun" : "";
-      tab.querySelector("span").textContent = $("which") ? `${h.code}: ${readText(c)}` : readText(c);
-      if (tab.hasAttribute("aria-current")) which(i);
-    });
-    const c = places.counts(places.all);
-    $("n-read").textContent = say("countOf", { read: c.read, all: c.all });
-    $("n-look").textContent = c.looks;
+  function count(i) {
+    const c = places.counts(places.of(i));
+    const tab = document.querySelector(`[data-tab="${i}"]`);
+    tab.className = c.read >= c.all ? "full" : c.read > 0 ? "begun" : "";
+    tab.querySelector("span").textContent = $("which") ? `${model.holders[i].code}: ${readText(c)}` : readText(c);
+    if (tab.hasAttribute("aria-current")) which(i);
+    const sum = places.counts(places.all);
+    $("n-read").textContent = say("countOf", { read: sum.read, all: sum.all });
+    $("n-look").textContent = sum.looks;
   }
 
   function which(i) {
@@ -427,7 +424,6 @@ function createDrawing() {
     bind,
     show,
     place,
-    counts,
     allRead,
     onChoose: (fn) => (choose = fn),
     onHolder: (fn) => (open = fn),
