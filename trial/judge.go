@@ -4,6 +4,7 @@ import (
 	"errors"
 	"math/big"
 	"math/bits"
+	"slices"
 	"sync"
 )
 
@@ -16,8 +17,8 @@ type Judge struct {
 	prog      *Programme
 	category  string
 	crits     []criterion
-	groups    []group // the same formulas, those over the same days side by side
-	limited   bool    // at least one criterion has limits
+	plan      plan // the same criteria for movements read in full
+	limited   bool // at least one criterion has limits
 	all       []uint64
 	fixedBits uint
 	solvers   sync.Pool // *prospect, warm from the last movement; see cannot.go
@@ -63,7 +64,7 @@ func NewJudge(p *Programme, category string) (*Judge, error) {
 		}
 		j.limited = j.limited || j.crits[i].limited
 	}
-	j.groups = groupCriteria(j.crits)
+	j.plan = newPlan(j.crits, j.limited)
 	return j, nil
 }
 
@@ -84,8 +85,15 @@ func (j *Judge) Milli(rates []int64, known uint64, out *Result) {
 	if len(j.all) != 1 {
 		panic("trial: Milli with a programme of more than 64 days")
 	}
-	set := [1]uint64{known & j.all[0]}
-	j.milli(rates[:len(j.prog.Days)], set[:], out)
+	r := rates[:len(j.prog.Days)]
+	if known &= j.all[0]; known == j.all[0] && out.judge == j && out.full {
+		verdict, ok := j.plan.judge(r, out.Values[:len(out.Values)+1])
+		if out.Verdict = verdict; ok {
+			return
+		}
+	}
+	set := [1]uint64{known}
+	j.milli(r, set[:], out)
 }
 
 // MilliLong is Milli with any number of days: bit (d-1)%64 of known[(d-1)/64] is day d.
@@ -101,7 +109,8 @@ func (j *Judge) milli(r []int64, known []uint64, out *Result) {
 	out.ready(j)
 	switch {
 	case subset(j.all, known) && inRange(r):
-		j.full(r, out)
+		out.fill()
+		out.Verdict, _ = j.plan.judge(r, out.Values[:len(out.Values)+1])
 	case knownInRange(r, known):
 		j.partial(known, out, reading{r: r})
 	default:
@@ -130,43 +139,13 @@ func ratesOf(r []int64, known []uint64) []Rate {
 	return rates
 }
 
-// inRange tells whether all |rate| are below 2^rateBits.
+// inRange tells whether all rates lie in [-2^rateBits, 2^rateBits).
 func inRange(r []int64) bool {
 	var far uint64
 	for _, x := range r {
-		far |= uint64(x ^ x>>63)
+		far |= uint64(x + 1<<rateBits) // 0 to 2^(rateBits+1) if x is in range
 	}
-	return far>>rateBits == 0
-}
-
-// full judges a movement with all its days in thousandths: the path of large batches.
-func (j *Judge) full(r []int64, out *Result) {
-	values := out.Values
-	for i := range j.groups {
-		j.groups[i].eval(r, values)
-	}
-	outside := false
-	crits := j.crits[:len(values)]
-	for i := range values {
-		v, c := &values[i], &crits[i]
-		v.Known, v.Unreachable = true, false
-		switch {
-		case !c.limited:
-			v.Outcome = Unlimited
-		case v.num < c.whole.loUp || v.num > c.whole.hi:
-			v.Outcome, outside = Outside, true
-		default:
-			v.Outcome = Inside
-		}
-	}
-	switch {
-	case !j.limited:
-		out.Verdict = None
-	case outside:
-		out.Verdict = Fail
-	default:
-		out.Verdict = Pass
-	}
+	return far>>(rateBits+1) == 0
 }
 
 // reading is one movement's rates as whole numbers: thousandths, or fixed-point thousandths with
@@ -230,7 +209,7 @@ func (j *Judge) exactly(rates []Rate, known []uint64, out *Result) {
 			}
 			v.Exact = FromRat(n.Quo(n, new(big.Rat).SetInt64(1000*c.q)))
 		case c.limited:
-			v.Unreachable = !j.feasible([]int{i}, true, known, situation{rates: rates})
+			v.Unreachable = !j.feasible([]int{i}, true, slices.Clone(known), situation{rates: slices.Clone(rates)})
 		default:
 			v.Outcome = Unlimited
 		}
@@ -258,7 +237,7 @@ func (j *Judge) decide(i int, v *Value, m *reading) {
 	}
 	v.Exact = j.enclose(i, n, m.kept)
 	if v.Outcome = c.outcome(n, c.lip, c.fixed); v.Outcome == Undecided {
-		v.Outcome = c.exactOutcome(c.exactN(exactRates(m.rates)))
+		v.Outcome = c.exactOutcome(c.exactN(exactRates(slices.Clone(m.rates))))
 	}
 }
 

@@ -2,6 +2,7 @@ package trial
 
 import (
 	"math/big"
+	"slices"
 )
 
 // Whether an open movement can still pass is a question about real numbers: is there a point, one
@@ -41,8 +42,10 @@ type situation struct {
 	known     []uint64
 }
 
+// situation copies a reading: the rare exact question must not make the buffers of the common
+// path escape to the heap.
 func (j *Judge) situation(known []uint64, m *reading) situation {
-	s := situation{r: m.r, rates: m.rates, known: known}
+	s := situation{r: slices.Clone(m.r), rates: slices.Clone(m.rates), known: slices.Clone(known)}
 	if m.rates != nil {
 		s.fixedBits = j.fixedBits
 	}

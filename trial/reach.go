@@ -1,5 +1,7 @@
 package trial
 
+import "slices"
+
 // unreachable tells whether no values of the blank days within ±60 s/d bring criterion i, by
 // itself, inside its limits. Fixed-point rates are off by less than one unit each, which moves N
 // by at most lip whatever the blank days hold: so limits widened by lip that cannot be reached
@@ -22,7 +24,7 @@ func (j *Judge) unreachable(i int, known []uint64, m *reading) bool {
 			return false
 		}
 	}
-	return !j.feasible([]int{i}, true, known, j.situation(known, m))
+	return !j.feasible([]int{i}, true, slices.Clone(known), j.situation(known, m))
 }
 
 // reach tells whether some real values of the blank days within ±box bring N into [lo, hi]. N is

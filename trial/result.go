@@ -47,22 +47,32 @@ type Result struct {
 	Values  []Value // in the order of the programme's criteria
 	judge   *Judge
 	wide    bool // some value refers to kept readings
+	full    bool // all values are whole-number ones, known, and only numerator and outcome change
 }
 
 // ready shapes the result for a judge. Denominators of whole-number values are set once here, so
 // that the fast path writes numerators alone.
 func (r *Result) ready(j *Judge) {
+	r.full = false
 	if r.judge == j && !r.wide && len(r.Values) == len(j.crits) {
 		return
 	}
-	if cap(r.Values) < len(j.crits) {
-		r.Values = make([]Value, len(j.crits))
+	if cap(r.Values) <= len(j.crits) {
+		r.Values = make([]Value, len(j.crits)+1) // one to spare for plan
 	}
 	r.Values = r.Values[:len(j.crits)]
 	for i := range r.Values {
 		r.Values[i] = Value{Exact: Exact{den: 1000 * j.crits[i].q}}
 	}
 	r.judge, r.wide = j, false
+}
+
+// fill marks all values known.
+func (r *Result) fill() {
+	for i := range r.Values {
+		r.Values[i].Known, r.Values[i].Unreachable = true, false
+	}
+	r.full = true
 }
 
 // Failed lists the symbols decided outside, in the programme's order.
