@@ -61,6 +61,7 @@ var _ = []struct{}{
 	fault(string(sheet.SignApart), "{value} has its sign apart from its digits.", "{value} a son signe à part.", "{value} hat sein Vorzeichen abgesetzt."),
 	fault(string(sheet.TooFine), "{value} is finer than 0.001; nothing is rounded here.", "{value} est plus fin que 0,001 ; rien n’est arrondi ici.", "{value} ist feiner als 0,001; hier wird nichts gerundet."),
 	fault(string(sheet.Beyond), "{value} is too great.", "{value} est trop grand.", "{value} ist zu groß."),
+	fault(string(sheet.TooLarge), "{value} has far too many digits.", "{value} a beaucoup trop de chiffres.", "{value} hat viel zu viele Stellen."),
 	fault(string(sheet.DecimalComma), "{value} has a decimal comma; write a point.", "{value} a une virgule ; écrivez un point.", "{value} hat ein Komma; schreiben Sie einen Punkt."),
 	fault(string(sheet.AmbiguousComma), "{value} may mean two things: write it with a point, or with another number of decimals.", "{value} peut se lire de deux façons : écrivez-le avec un point, ou avec un autre nombre de décimales.", "{value} kann zweierlei heißen: Schreiben Sie es mit einem Punkt, oder mit anderer Stellenzahl."),
 	fault(string(sheet.Grouping), "{value} has digits in groups; write the number without them.", "{value} a des chiffres groupés ; écrivez le nombre sans séparateurs.", "{value} hat gruppierte Ziffern; schreiben Sie die Zahl ohne."),
@@ -118,6 +119,7 @@ var _ = []struct{}{
 	line(sheet.UnknownColumn, "the column is not known here ({0})", "cette colonne est inconnue ici ({0})", "diese Spalte ist hier unbekannt ({0})"),
 	line(sheet.RepeatedColumn, "the column appears twice", "la colonne figure deux fois", "die Spalte kommt zweimal vor"),
 	line(sheet.StepAndDay, "a file has either a column step or a column day", "un fichier a soit une colonne step, soit une colonne day", "eine Datei hat entweder eine Spalte step oder eine Spalte day"),
+	line(sheet.TooLarge, "{0} has more than 15 digits before the point", "{0} a plus de 15 chiffres avant la virgule", "{0} hat mehr als 15 Stellen vor dem Komma"),
 	line("place_number", "{0} is not the number of a place, counted from 1", "{0} n’est pas un numéro d’emplacement, compté à partir de 1", "{0} ist keine Platznummer, gezählt ab 1"),
 }
 
