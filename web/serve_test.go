@@ -4,8 +4,22 @@ import (
 	"context"
 	"net"
 	"net/http"
+	"sync"
 	"testing"
+	"time"
 )
+
+// noted tells when its listener was closed: the server has begun to end.
+type noted struct {
+	net.Listener
+	once   sync.Once
+	closed chan struct{}
+}
+
+func (n *noted) Close() error {
+	n.once.Do(func() { close(n.closed) })
+	return n.Listener.Close()
+}
 
 func TestRequestUnderWayIsFinished(t *testing.T) {
 	t.Parallel()
@@ -23,9 +37,10 @@ func TestRequestUnderWayIsFinished(t *testing.T) {
 			w.WriteHeader(http.StatusServiceUnavailable)
 		}
 	})
+	closed := &noted{Listener: ln, closed: make(chan struct{})}
 	ctx, cancel := context.WithCancel(t.Context())
 	ended := make(chan error, 1)
-	go func() { ended <- Serve(ctx, ln, h) }()
+	go func() { ended <- Serve(ctx, closed, h) }()
 	status := make(chan int, 1)
 	go func() {
 		res, err := http.Get("http://" + ln.Addr().String())
@@ -38,10 +53,11 @@ func TestRequestUnderWayIsFinished(t *testing.T) {
 	}()
 	<-begun
 	cancel()
-	select {
+	<-closed.closed
+	select { // a wrong Serve returns at once; a right one cannot, so the wait never fails it
 	case err := <-ended:
 		t.Fatalf("Serve returned %v with a request under way", err)
-	default:
+	case <-time.After(50 * time.Millisecond):
 	}
 	close(goOn)
 	if got := <-status; got != 200 {

@@ -111,6 +111,7 @@ func TestSignInAndOut(t *testing.T) {
 	if _, err := house.Session(t.Context(), token); store.KindOf(err) != store.KindUnauthenticated {
 		t.Errorf("after signing out the session gives %v", err)
 	}
+	c.get("/login?next=x=1")
 	if s := log.String(); strings.Contains(s, token) || strings.Contains(s, storetest.Password) || strings.Contains(s, "x=1") {
 		t.Error("the log holds a secret or a query")
 	}

@@ -25,6 +25,14 @@ func reached(t *testing.T, lab *store.Lab) (*server, chi.Router) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	// One more page and form for every right, so that each is tried whatever the table holds.
+	for _, right := range []store.Right{store.RightSelf, store.RightToday, store.RightEnter, store.RightRegister, store.RightBatches, store.RightVerdicts,
+		store.RightCorrect, store.RightEnd, store.RightRemark, store.RightAssess, store.RightRelease, store.RightCertificates, store.RightBench,
+		store.RightSetup, store.RightAccounts, store.RightJournal} {
+		for _, method := range []string{http.MethodGet, http.MethodPost} {
+			s.routes = append(s.routes, route{method: method, pattern: "/right-" + string(right), access: needs(right)})
+		}
+	}
 	for i := range s.routes {
 		s.routes[i].handle = func(w http.ResponseWriter, _ *http.Request) error {
 			w.WriteHeader(statusReached)
