@@ -8,7 +8,6 @@ import (
 	"io"
 	"os"
 	"os/signal"
-	"runtime/debug"
 	"syscall"
 )
 
@@ -39,19 +38,19 @@ type command struct {
 // command give it a run function in its own file of this package.
 func commands() []command {
 	return []command{
-		{"serve", "run the laboratory's web service", "RATEHOUSE_ADDR=127.0.0.1:8080 ratehouse serve", nil, nil},
-		{"demo", "serve an invented laboratory with demo data", "ratehouse demo", nil, nil},
+		{"serve", "run the laboratory's web service", "RATEHOUSE_ADDR=127.0.0.1:8080 ratehouse serve", runServe, serveFlags},
+		{"demo", "serve an invented laboratory with demo data", "ratehouse demo", runDemo, demoFlags},
 		{"judge", "judge movements from a file of rates or states", "ratehouse judge rates.csv", runJudge, judgeFlags},
 		{"outlook", "estimate how likely open movements will pass", "ratehouse outlook -history past.csv open.csv", nil, nil},
 		{"simulate", "make physically plausible movements", "ratehouse simulate -n 100 -seed 1", nil, nil},
 		{"programme", "check a programme file", "ratehouse programme check winter.json", nil, nil},
-		{"verify", "verify a certificate file", "ratehouse verify -key lab.pub certificate.json", nil, nil},
-		{"migrate", "bring the database up to date", "DATABASE_OWNER_URL=postgres://... ratehouse migrate", nil, nil},
+		{"verify", "verify a certificate file", "ratehouse verify -key lab.pub certificate.json", runVerify, verifyFlags},
+		{"migrate", "bring the database up to date", "DATABASE_OWNER_URL=postgres://... ratehouse migrate", runMigrate, migrateFlags},
 		{"backup", "write a backup", "ratehouse backup lab.backup", nil, nil},
 		{"restore", "restore a backup into an empty database", "ratehouse restore lab.backup", nil, nil},
 		{"journal", "verify the journal", "ratehouse journal verify", nil, nil},
-		{"account", "add, list or disable accounts", "ratehouse account add -role technician ada < password", nil, nil},
-		{"token", "add, list or revoke tokens", "ratehouse token add -scope readings bench-3", nil, nil},
+		{"account", "add, list or disable accounts", `ratehouse account add -role technician -title "Ada Brink" ada < password`, runAccount, accountFlags},
+		{"token", "add, list or revoke tokens", `ratehouse token add -account ada -scope readings "bench 3" > token`, runToken, tokenFlags},
 		{"send", "send readings from a file to a server", "ratehouse send readings.csv", nil, nil},
 		{"tls", "make a certificate for the local network", "ratehouse tls init", nil, nil},
 		{"validate", "check the program against published values", "ratehouse validate", nil, nil},
@@ -61,6 +60,7 @@ func commands() []command {
 
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	context.AfterFunc(ctx, stop) // a second signal ends the program at once
 	code := run(ctx, os.Args[1:], os.Getenv, os.Stdin, os.Stdout, os.Stderr)
 	stop()
 	os.Exit(code)
@@ -119,17 +119,6 @@ func usage(w io.Writer) {
 
 // runVersion prints the module version and the revision it was built from.
 func runVersion(_ context.Context, p program, _ []string) int {
-	version, revision := "devel", ""
-	if info, ok := debug.ReadBuildInfo(); ok {
-		if v := info.Main.Version; v != "" && v != "(devel)" {
-			version = v
-		}
-		for _, s := range info.Settings {
-			if s.Key == "vcs.revision" {
-				revision = " " + s.Value
-			}
-		}
-	}
-	fmt.Fprintf(p.stdout, "ratehouse %s%s\n", version, revision)
+	fmt.Fprintf(p.stdout, "ratehouse %s\n", build())
 	return exitDone
 }

@@ -20,6 +20,26 @@ func (c *Cluster) EnsureDatabase(ctx context.Context, name string) error {
 	})
 }
 
+// KeepOnly drops the databases whose name begins with prefix, all but the one named keep.
+func (c *Cluster) KeepOnly(ctx context.Context, prefix, keep string) error {
+	return c.asSuperuser(ctx, func(conn *pgx.Conn) error {
+		rows, err := conn.Query(ctx, `SELECT datname FROM pg_database WHERE starts_with(datname, $1) AND datname <> $2`, prefix, keep)
+		if err != nil {
+			return err
+		}
+		names, err := pgx.CollectRows(rows, pgx.RowTo[string])
+		if err != nil {
+			return err
+		}
+		for _, name := range names {
+			if _, err := conn.Exec(ctx, "DROP DATABASE "+pgx.Identifier{name}.Sanitize()+" WITH (FORCE)"); err != nil {
+				return err
+			}
+		}
+		return nil
+	})
+}
+
 // ensureRoles makes the login roles; whether one may log in is decided by the socket (writeAccess).
 func (c *Cluster) ensureRoles(ctx context.Context) error {
 	return c.asSuperuser(ctx, func(conn *pgx.Conn) error {

@@ -9,7 +9,8 @@ import (
 
 var (
 	decimalForm = regexp.MustCompile(`^-?(0|[1-9][0-9]{0,17})(\.[0-9]{1,27})?$`)
-	ratioForm   = regexp.MustCompile(`^-?(0|[1-9][0-9]{0,39})/[1-9][0-9]{0,39}$`)
+	// A mean over days read at odd seconds has a denominator with some five digits a day.
+	ratioForm = regexp.MustCompile(`^-?(0|[1-9][0-9]{0,499})/[1-9][0-9]{0,499}$`)
 )
 
 // rat gives the exact value of a decimal and its digits after the point.
