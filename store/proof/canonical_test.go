@@ -159,7 +159,7 @@ func TestCanonicalRefusals(t *testing.T) {
 		{`NaN`, ErrSyntax}, {`Infinity`, ErrSyntax}, {`-Infinity`, ErrSyntax}, {`nul`, ErrSyntax}, {`'a'`, ErrSyntax}, {`"a`, ErrSyntax},
 		{`"\x"`, ErrSyntax}, {`"\u12"`, ErrSyntax}, {`"\u+123"`, ErrSyntax}, {"\"\n\"", ErrSyntax}, {`1 2`, ErrSyntax}, {`[1 2]`, ErrSyntax},
 		{`{"a" 1}`, ErrSyntax}, {`{"a":}`, ErrSyntax}, {"\ufeff1", ErrSyntax}, {`"a"x`, ErrSyntax}, {"\u00a01", ErrSyntax},
-		{deep, ErrDepth},
+		{deep, ErrDepth}, {deep[:299], ErrDepth}, {"[1\xff]", ErrText},
 	} {
 		if got, err := CanonicalJSON([]byte(c.in)); !errors.Is(err, c.want) || got != nil {
 			t.Errorf("%q: %q, %v; want %v", c.in, got, err, c.want)

@@ -200,7 +200,7 @@ func (c *checker) criteria() {
 		c.limits(where, k)
 		low, high, err := k.deciding()
 		if err != nil {
-			c.fault(where, "limit %v", err)
+			c.fault(where+".limits", "%v", err)
 			continue
 		}
 		c.judged(where, k, low, high)
@@ -223,7 +223,7 @@ func (c *checker) limits(where string, k Criterion) {
 	// Guard bands wider than the range leave nothing to accept: accept_min may pass accept_max.
 	for _, pair := range [][2]int{{0, 3}, {0, 1}, {2, 3}} {
 		low, high := v[pair[0]], v[pair[1]]
-		c.need(low == nil || high == nil || low.Cmp(high) <= 0, where, "limits are not in order")
+		c.need(low == nil || high == nil || low.Cmp(high) <= 0, where+".limits", "are not in order")
 	}
 }
 
@@ -231,7 +231,7 @@ func (c *checker) limits(where string, k Criterion) {
 func (c *checker) judged(where string, k Criterion, low, high *big.Rat) {
 	limited := low != nil || high != nil
 	if k.Value == "" {
-		c.need(k.Printed == "" && k.Margin == "", where, "undecided, but printed or with a margin")
+		c.need(k.Printed == "" && k.Margin == "", where+".printed", "undecided, but printed or with a margin")
 		c.need(k.Verdict == undecided(limited), where+".verdict", "%q for an undecided criterion", k.Verdict)
 		return
 	}

@@ -47,6 +47,8 @@ func TestCheckHead(t *testing.T) {
 		{"title", "title", func(r *Record) { r.Title = " " }},
 		{"replaces itself", "replaces", func(r *Record) { r.Replaces, r.ReplaceReason = r.Number, "x" }},
 		{"no reason", "replace_reason", func(r *Record) { r.Replaces = "26-1" }},
+		{"replaces what is no number", "replaces", func(r *Record) { r.Replaces, r.ReplaceReason = "26/1", "x" }},
+		{"no beginning", "trial.from", func(r *Record) { r.Trial.From = Instant{} }},
 		{"language", "language", func(r *Record) { r.Language = "it" }},
 		{"zone", "time_zone", func(r *Record) { r.TimeZone = "" }},
 		{"issued", "issued_at", func(r *Record) { r.IssuedAt = Instant{} }},
@@ -64,6 +66,7 @@ func TestCheckHead(t *testing.T) {
 		{"attempt", "movement.attempt", func(r *Record) { r.Movement.Attempt = 0 }},
 		{"two sizes", "movement.size", func(r *Record) { r.Movement.Size.AreaMM2 = "300" }},
 		{"size", "movement.size", func(r *Record) { r.Movement.Size.DiameterMM = "27,4" }},
+		{"area", "movement.size.area_mm2", func(r *Record) { r.Movement.Size = Size{AreaMM2: "314,1"} }},
 		{"received", "received", func(r *Record) { r.Received.At = Instant{} }},
 	})
 }
@@ -86,7 +89,9 @@ func TestCheckMethod(t *testing.T) {
 		{"words", "decision.words", func(r *Record) { r.Decision.Words = "" }},
 		{"guard of the simple rule", "decision.guard", func(r *Record) { r.Decision.Guard = "1" }},
 		{"guarded without guard", "decision.guard", func(r *Record) { r.Decision.Rule = RuleGuarded }},
-		{"guarded without acceptance limits", "criteria[0]", func(r *Record) { r.Decision = Decision{RuleGuarded, "1", "guarded"} }},
+		{"guard is no number", "decision.guard", func(r *Record) { guard(r); r.Decision.Guard = "half" }},
+		{"guarded without lower limit", "criteria[0] (M).accept_min", func(r *Record) { guard(r); r.Criteria[0].AcceptMin = "" }},
+		{"guarded without upper limit", "criteria[0] (M).accept_max", func(r *Record) { guard(r); r.Criteria[0].AcceptMax = "" }},
 		{"caution on the title", "cautions", func(r *Record) { r.Cautions = drop(r.Cautions, CautionTitle) }},
 		{"caution on accreditation", "cautions", func(r *Record) { r.Cautions = drop(r.Cautions, CautionAccreditation) }},
 		{"caution on the piece", "cautions", func(r *Record) { r.Cautions = drop(r.Cautions, CautionThisPiece) }},
@@ -95,9 +100,9 @@ func TestCheckMethod(t *testing.T) {
 		{"two references", "reference", func(r *Record) { r.Reference.Code = NotStated }},
 		{"conditions", "conditions", func(r *Record) { r.Conditions.Code = "" }},
 		{"measured nothing", "conditions", func(r *Record) { r.Conditions.Code = ConditionsMeasured }},
-		{"chambers", "conditions.chambers[0]", func(r *Record) {
-			r.Conditions = Conditions{ConditionsMeasured, []Chamber{{Code: "A", NominalC: "23", MeanC: "warm"}}}
-		}},
+		{"chamber is warm", "conditions.chambers[0]", func(r *Record) { chamber(r, Chamber{Code: "A", NominalC: "23", MeanC: "warm"}) }},
+		{"chamber without code", "conditions.chambers[0].code", func(r *Record) { chamber(r, Chamber{NominalC: "23"}) }},
+		{"chamber without set point", "conditions.chambers[0].nominal_c", func(r *Record) { chamber(r, Chamber{Code: "A"}) }},
 		{"uncertainty", "uncertainty.k", func(r *Record) { r.Uncertainty.Reason = "" }},
 		{"uncertainty and reason", "uncertainty", func(r *Record) { r.Uncertainty.K = "2" }},
 		{"uncertainty of nothing", "uncertainty.criteria[0]", func(r *Record) {
@@ -110,6 +115,8 @@ func TestCheckMethod(t *testing.T) {
 		{"remark's step", "remarks[0].step", func(r *Record) { r.Remarks[0].Step = -2 }},
 	})
 }
+
+func chamber(r *Record, c Chamber) { r.Conditions = Conditions{ConditionsMeasured, []Chamber{c}} }
 
 func drop(list []string, word string) []string {
 	return slices.DeleteFunc(list, func(s string) bool { return s == word })
@@ -124,6 +131,8 @@ func TestCheckEvidence(t *testing.T) {
 		{"position", "days[2].position", func(r *Record) { r.Days[2].Position = "" }},
 		{"temperature", "days[2].temperature_c", func(r *Record) { r.Days[2].TemperatureC = "" }},
 		{"rate is no number", "days[2].rate", func(r *Record) { r.Days[2].Rate = "+0.4" }},
+		{"rate from states is no number", "days[2].rate", func(r *Record) { r.Readings[2].Kind, r.Days[2].Rate = ReadingState, "+0.4" }},
+		{"state is no number", "readings[2].value", func(r *Record) { r.Readings[2].Kind, r.Readings[2].Value = ReadingState, "0,4" }},
 		{"another rate", "days[0].rate", func(r *Record) { r.Days[0].Rate = "1.3" }},
 		{"rate left out", "days[0].rate", func(r *Record) { r.Days[0].Rate = "" }},
 		{"rate left out, criteria kept", "criteria[0] (M).value", func(r *Record) { r.Days[0].Rate = "" }},
@@ -167,14 +176,19 @@ func TestCheckCriteria(t *testing.T) {
 		{"printed with a plus", "criteria[0] (M).printed", func(r *Record) { r.Criteria[0].Printed = "+2.01" }},
 		{"margin", "criteria[0] (M).margin", func(r *Record) { r.Criteria[0].Margin = "4.00" }},
 		{"no margin", "criteria[0] (M).margin", func(r *Record) { r.Criteria[0].Margin = "" }},
-		{"limit", "criteria[0] (M)", func(r *Record) { r.Criteria[0].Max = "six" }},
-		{"limits swapped", "criteria[0] (M)", func(r *Record) { r.Criteria[0].Min, r.Criteria[0].Max = "6", "-4" }},
+		{"limit", "criteria[0] (M).limits", func(r *Record) { r.Criteria[0].Max = "six" }},
+		{"limits swapped", "criteria[0] (M).limits", func(r *Record) { r.Criteria[0].Min, r.Criteria[0].Max = "6", "-4" }},
 		{"verdict", "criteria[0] (M).verdict", func(r *Record) { r.Criteria[0].Verdict = VerdictFail }},
 		{"limit moved", "criteria[0] (M).verdict", func(r *Record) { r.Criteria[0].Max = "2" }},
 		{"limits taken away", "criteria[0] (M).verdict", func(r *Record) { r.Criteria[0].Min, r.Criteria[0].Max = "", "" }},
 		{"acceptance limit of the simple rule", "criteria[0] (M).accept_max", func(r *Record) { r.Criteria[0].AcceptMax = "5" }},
-		{"undecided with text", "criteria[0] (M)", func(r *Record) { r.Criteria[0].Value = "" }},
+		{"undecided with text", "criteria[0] (M).printed", func(r *Record) { r.Criteria[0].Value = "" }},
 		{"undecided though read", "criteria[0] (M).value", func(r *Record) { r.Criteria[0] = undecide(r.Criteria[0]) }},
+		{"undecided passes", "criteria[0] (M).verdict", func(r *Record) { r.Criteria[0] = undecide(r.Criteria[0]); r.Criteria[0].Verdict = VerdictPass }},
+		{"margin without limits", "criteria[0] (M).margin", func(r *Record) {
+			k := &r.Criteria[0]
+			k.Min, k.Max, k.Verdict = "", "", VerdictNone
+		}},
 		{"6.04 printed 6.0", "criteria[0] (M).printed", func(r *Record) {
 			k := &r.Criteria[0]
 			k.Decimals, k.Value, k.Printed, k.Margin, k.Verdict = 1, "151/25", "6.0", "-0.04", VerdictFail

@@ -261,8 +261,24 @@ func TestTreeRanges(t *testing.T) {
 			t.Errorf("%d: %v, want ErrTreeRange", i, err)
 		}
 	}
-	if err := VerifyConsistency(3, 4, nil, leaves[0], leaves[0]); !errors.Is(err, ErrProof) {
-		t.Errorf("empty proof: %v", err)
+}
+
+// Proofs of the wrong length whose hashes add up all the same: with a root made to fit, only
+// the count of levels can refuse them.
+func TestFittedProofsRefused(t *testing.T) {
+	t.Parallel()
+	a, b := LeafHash([]byte("a")), LeafHash([]byte("b"))
+	two, swapped := nodeHash(a, b), nodeHash(b, a)
+	for i, err := range []error{
+		VerifyInclusion(a, 0, 1, []Hash{b}, two), VerifyInclusion(a, 0, 1, []Hash{b}, swapped),
+		VerifyInclusion(a, 1, 2, []Hash{b, b}, nodeHash(b, swapped)), VerifyInclusion(a, 0, 2, nil, a),
+		VerifyConsistency(3, 4, nil, a, a), VerifyConsistency(2, 4, nil, a, a), VerifyConsistency(1, 2, nil, a, a),
+		VerifyConsistency(1, 2, []Hash{b, b}, nodeHash(b, a), nodeHash(b, two)),
+		VerifyConsistency(1, 2, []Hash{b, b}, a, nodeHash(two, b)), VerifyConsistency(3, 4, []Hash{a}, a, a),
+	} {
+		if !errors.Is(err, ErrProof) {
+			t.Errorf("%d: %v, want ErrProof", i, err)
+		}
 	}
 }
 
