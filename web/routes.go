@@ -4,6 +4,8 @@ import (
 	"net/http"
 
 	"ratehouse/store"
+	"ratehouse/web/desk"
+	"ratehouse/web/floor"
 	"ratehouse/web/page"
 )
 
@@ -30,6 +32,7 @@ type route struct {
 // here (scripts and styles aside, which are public). The finer rights are decided by the verbs.
 func (s *server) table() []route {
 	const get, post = http.MethodGet, http.MethodPost
+	bench, qa := floor.New(s.lab), desk.New(s.lab)
 	return []route{
 		{get, "/", public, s.start},
 		{get, page.LoginURL, public, s.showLogin},
@@ -37,8 +40,31 @@ func (s *server) table() []route {
 		{post, page.LogoutURL, public, s.logOut},
 		{post, page.LanguageURL, public, s.setLanguage},
 		{post, page.ThemeURL, public, s.setTheme},
+		{get, page.TodayURL, needs(store.RightToday), bench.Today},
+		{get, page.NewBatchURL, needs(store.RightRegister), bench.NewBatch},
+		{post, page.NewBatchURL, needs(store.RightRegister), bench.RegisterBatch},
+		{get, "/batches/{code}/rounds/{k}", needs(store.RightEnter), bench.Round},
+		{post, "/batches/{code}/rounds/{k}", needs(store.RightEnter), bench.PostReading},
+		{get, "/batches/{code}/rounds/{k}/readings", needs(store.RightEnter), bench.OwnReading},
+		{post, "/batches/{code}/rounds/{k}/readings", needs(store.RightEnter), bench.SaveReadings},
+		{post, "/batches/{code}/rounds/{k}/open", needs(store.RightEnter), bench.OpenRound},
+		{post, "/batches/{code}/rounds/{k}/close", needs(store.RightEnter), bench.CloseRound},
+		{get, "/batches/{code}/rounds/{k}/remark", needs(store.RightEnter), bench.RoundRemark},
+		{post, "/batches/{code}/rounds/{k}/remark", needs(store.RightRemark), bench.AddRemark},
+		{get, "/batches/{code}/rounds/{k}/movement", needs(store.RightEnter), bench.Movement},
+		{post, "/batches/{code}/rounds/{k}/movement/remark", needs(store.RightRemark), bench.AddRemark},
+		{post, "/batches/{code}/rounds/{k}/movement/end", needs(store.RightEnd), bench.EndMovement},
 		{get, page.HealthURL, public, s.health},
 		{get, page.ReadyURL, public, s.ready},
+		{get, page.BatchesURL, needs(store.RightBatches), qa.Batches},
+		{get, "/batches/{code}", needs(store.RightBatches), qa.Batch},
+		{get, "/batches/{code}/sheets.csv", needs(store.RightVerdicts), qa.SheetsCSV},
+		{post, "/batches/{code}/remarks", needs(store.RightRemark), qa.AddRemark},
+		{post, "/batches/{code}/remarks/{remark}", needs(store.RightAssess), qa.MoveRemark},
+		{get, "/batches/{code}/movements/{serial}", needs(store.RightBatches), qa.Movement},
+		{post, "/batches/{code}/movements/{serial}/readings", needs(store.RightCorrect), qa.Correct},
+		{post, "/batches/{code}/movements/{serial}/end", needs(store.RightEnd), qa.End},
+		{get, page.SearchURL, needs(store.RightBatches), qa.Search},
 	}
 }
 

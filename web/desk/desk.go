@@ -1,0 +1,38 @@
+package desk
+
+import (
+	"net/http"
+	"net/url"
+
+	"ratehouse/store"
+	"ratehouse/web/page"
+)
+
+// Desk answers the QA lead's pages of one laboratory. Its methods are page.Handlers.
+type Desk struct{ lab *store.Lab }
+
+// New makes the pages of a laboratory.
+func New(lab *store.Lab) *Desk { return &Desk{lab} }
+
+// param is a part of the address as it was meant; the router leaves escapes in it where there are any.
+func param(r *http.Request, name string) string {
+	v := r.PathValue(name)
+	if r.URL.RawPath == "" {
+		return v
+	}
+	if plain, err := url.PathUnescape(v); err == nil {
+		return plain
+	}
+	return v
+}
+
+// rights are what the actor may do on these pages.
+type rights struct {
+	verdicts, enter, register, correct, end, remark, assess, release bool
+}
+
+func rightsOf(c *page.Context) rights {
+	may := c.Actor.May
+	return rights{may(store.RightVerdicts), may(store.RightEnter), may(store.RightRegister), may(store.RightCorrect), may(store.RightEnd),
+		may(store.RightRemark), may(store.RightAssess), may(store.RightRelease)}
+}
