@@ -56,6 +56,9 @@ func TestUpAtOnce(t *testing.T) {
 	if err := migrations.Current(t.Context(), app); err != nil {
 		t.Error(err)
 	}
+	if _, err := app.Exec(t.Context(), "INSERT INTO rh.schema_version (version_id, is_applied) VALUES (99, true)"); err == nil {
+		t.Error("the application role wrote the schema's version")
+	}
 	if again, err := migrations.Up(t.Context(), db.Owner); err != nil || len(again) != 0 {
 		t.Errorf("a second time applied %v, %v", again, err)
 	}

@@ -6,8 +6,10 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
+	"runtime"
 	"strings"
 	"testing"
+	"time"
 
 	"github.com/jackc/pgx/v5"
 )
@@ -111,8 +113,9 @@ func TestRoles(t *testing.T) {
 			t.Errorf("%s makes a schema: %v", role, err)
 		}
 	}
+	run(t, c, "CREATE ROLE somebody LOGIN")
 	if _, err := pgx.Connect(t.Context(), c.DSN("somebody", "lab")); err == nil {
-		t.Error("an unknown role logged in")
+		t.Error("a role that is not of the house logged in")
 	}
 }
 
@@ -156,17 +159,13 @@ func TestStopAndStart(t *testing.T) {
 			t.Errorf("%s is left: %v", f, err)
 		}
 	}
-	// What a killed initdb leaves must not matter, whatever it is.
-	if err := os.MkdirAll(filepath.Join(dir, "data.init", "base"), 0o700); err != nil {
-		t.Fatal(err)
-	}
 	if n := ask[int](t, start(t, Config{Dir: dir}), "SELECT n FROM kept"); n != 7 {
 		t.Errorf("kept %d", n)
 	}
 }
 
-// A start that is called off half-way, or has a setting that PostgreSQL refuses, leaves nothing
-// running and the directory usable.
+// A start that is called off half-way, has a setting that PostgreSQL refuses, or finds itself locked
+// out leaves nothing running and the directory usable.
 func TestStartFails(t *testing.T) {
 	t.Parallel()
 	dir := filepath.Join(tempDir(t), "db")
@@ -175,11 +174,42 @@ func TestStartFails(t *testing.T) {
 	if _, err := Start(ctx, Config{Dir: dir}); !errors.Is(err, context.Canceled) {
 		t.Errorf("got %v", err)
 	}
+	// What a killed initdb leaves must not matter, whatever it is.
+	if err := os.MkdirAll(filepath.Join(dir, "data.init", "base"), 0o700); err != nil {
+		t.Fatal(err)
+	}
 	refused(t, Config{Dir: dir, Settings: map[string]string{"work_mem": "plenty"}}, "work_mem", "plenty")
+	refused(t, Config{Dir: dir, Settings: map[string]string{"ident_file": os.DevNull}}, "does not let us in")
 	if left, err := serverProcesses(filepath.Join(dir, "data"), 0); err != nil || len(left) > 0 {
 		t.Errorf("still running: %v %v", left, err)
 	}
 	start(t, Config{Dir: dir})
+}
+
+// The server must not hang on the thread of whoever called Start: the kernel's death signal comes
+// when the thread that forked it ends.
+func TestOutlivesTheCallersThread(t *testing.T) {
+	t.Parallel()
+	dir := filepath.Join(tempDir(t), "db")
+	var c *Cluster
+	done := make(chan struct{})
+	go func() {
+		defer close(done)
+		runtime.LockOSThread() // never unlocked: the thread ends with this goroutine
+		c = start(t, Config{Dir: dir, Throwaway: true})
+	}()
+	<-done
+	if c == nil {
+		return
+	}
+	select {
+	case <-c.Done():
+		t.Fatal("the server ended with the thread that called Start")
+	case <-time.After(time.Second): // far longer than a shutdown takes
+	}
+	if n := ask[int](t, c, "SELECT 1"); n != 1 {
+		t.Error(n)
+	}
 }
 
 // Where the path is too long for a socket, a short private folder is used and cleared away.

@@ -128,10 +128,10 @@ func TestBlockedPath(t *testing.T) {
 	t.Parallel()
 	base := tempDir(t)
 	file, closed, link := filepath.Join(base, "file"), filepath.Join(base, "closed"), filepath.Join(base, "link")
-	dangling := filepath.Join(base, "dangling")
+	dangling, through := filepath.Join(base, "dangling"), filepath.Join(base, "through")
 	for _, err := range []error{
 		os.WriteFile(file, nil, 0o600), os.Mkdir(closed, 0o700),
-		os.Symlink(closed, link), os.Symlink(filepath.Join(base, "nowhere"), dangling),
+		os.Symlink(closed, link), os.Mkdir(filepath.Join(closed, "inner"), 0o755), os.Symlink(filepath.Join(closed, "inner"), through), os.Symlink(filepath.Join(base, "nowhere"), dangling),
 	} {
 		if err != nil {
 			t.Fatal(err)
@@ -143,6 +143,7 @@ func TestBlockedPath(t *testing.T) {
 	if os.Geteuid() == 0 { // closed to the server's account, though not to us
 		refused(t, Config{Dir: filepath.Join(closed, "a")}, closed+" cannot be entered by user", "owner root", "chmod o+x "+closed)
 		refused(t, Config{Dir: filepath.Join(link, "a")}, closed+" cannot be entered by user")
+		refused(t, Config{Dir: filepath.Join(through, "a")}, closed+" cannot be entered by user")
 	}
 	if _, err := os.Lstat(filepath.Join(closed, "a")); err == nil {
 		t.Error("something was made in the closed folder")

@@ -49,8 +49,6 @@ func TestRolesAreLimited(t *testing.T) {
 	for _, c := range []struct{ dsn, sql, code string }{
 		{db.App, "CREATE TABLE rh.mine (n int)", "42501"},
 		{db.App, "TRUNCATE rh.reading", "42501"},
-		{db.App, "DELETE FROM rh.schema_version", "42501"},
-		{db.App, "INSERT INTO rh.schema_version (version_id, is_applied) VALUES (99, true)", "42501"},
 		{db.Read, "INSERT INTO rh.setting (name, value) VALUES ('mine', '')", "42501"},
 		{db.Read, "SELECT version_id FROM rh.schema_version", ""},
 	} {
