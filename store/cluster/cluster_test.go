@@ -113,6 +113,10 @@ func TestRoles(t *testing.T) {
 			t.Errorf("%s makes a schema: %v", role, err)
 		}
 	}
+	// Another command of the same account finds the running server.
+	if dsn, err := RunningDSN(c.cfg.Dir, App, "lab"); err != nil || dsn != c.DSN(App, "lab") {
+		t.Errorf("%s is found as %s, %v", c.DSN(App, "lab"), dsn, err)
+	}
 	run(t, c, "CREATE ROLE somebody LOGIN")
 	if _, err := pgx.Connect(t.Context(), c.DSN("somebody", "lab")); err == nil {
 		t.Error("a role that is not of the house logged in")
@@ -223,12 +227,34 @@ func TestLongPath(t *testing.T) {
 	if info, err := os.Lstat(c.socket); err != nil || info.Mode().Perm() != 0o700 || owner(info) != c.user.uid {
 		t.Errorf("%s: %v %v", c.socket, info, err)
 	}
+	dsn, err := RunningDSN(dir, Superuser, "postgres")
+	if err != nil || dsn != c.DSN(Superuser, "postgres") {
+		t.Errorf("%s is found as %s, %v", c.DSN(Superuser, "postgres"), dsn, err)
+	}
 	if n := ask[int](t, c, "SELECT 1"); n != 1 {
 		t.Error(n)
 	}
 	stop(t, c)
 	if _, err := os.Lstat(c.socket); !errors.Is(err, fs.ErrNotExist) {
 		t.Errorf("%s is left", c.socket)
+	}
+}
+
+// Only the databases of the prefix are dropped, and the one to keep stays.
+func TestKeepOnly(t *testing.T) {
+	t.Parallel()
+	c := start(t, Config{Dir: filepath.Join(tempDir(t), "db"), Throwaway: true})
+	for _, name := range []string{"demo_1", "demo_2", "lab"} {
+		if err := c.EnsureDatabase(t.Context(), name); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if err := c.KeepOnly(t.Context(), "demo_", "demo_2"); err != nil {
+		t.Fatal(err)
+	}
+	left := ask[string](t, c, "SELECT string_agg(datname, ' ' ORDER BY datname) FROM pg_database WHERE NOT datistemplate")
+	if left != "demo_2 lab postgres" {
+		t.Errorf("left: %s", left)
 	}
 }
 
