@@ -117,10 +117,11 @@ func TestPartsInTheBrowser(t *testing.T) {
 	}, func(c *page.Context) templ.Component {
 		return gallery(c, j, fail, open, lot(t, j, 200))
 	})
-	for _, lang := range []string{"fr", "de", "en"} {
+	for _, lang := range []string{"fr", "de"} {
 		tab.Go("/" + lang)
 		tab.Shot("parts-" + lang)
 	}
+	tab.Go("/en")
 	tab.Shots("parts")
 	tab.AxeBoth()
 	if n := tab.Count(`circle[cx=NaN], [d*=NaN], [x=NaN], [y=NaN], [height^="-"], [width^="-"]`); n > 0 {

@@ -40,8 +40,8 @@ func Serve(t testing.TB, lab *store.Lab) (base string) {
 	return s.URL
 }
 
-// tabWithin bounds what one test may do in its tab.
-const tabWithin = 2 * time.Minute
+// tabWithin bounds what one test may do in its tab; generous, because packages are tested side by side.
+const tabWithin = 5 * time.Minute
 
 // browser is the Chromium of this process, started at first use; it ends with the process, because its
 // pipe closes.
