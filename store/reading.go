@@ -126,7 +126,7 @@ var RefusalCodes = []string{
 	"no_rate_at_start", "read_at_missing", "read_at_order", "future", "too_early", "unknown_reader", "reason_needed", "base_ahead",
 	"id_reused", "id_missing", "has_states", "has_rate", "beyond_600", "beyond_half_dial",
 	"confirm_number", "evidence_form", "released",
-	"number_empty", "number_form", "number_fine", "number_comma", "number_range",
+	"number_form",
 }
 
 // cellKey names one cell of the evidence.

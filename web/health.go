@@ -11,8 +11,13 @@ func (s *server) health(w http.ResponseWriter, _ *http.Request) error {
 	return plain(w, http.StatusOK, "ok")
 }
 
-// ready tells that the database answers, within two seconds.
+// ready tells that the database answers, within two seconds, and that the program is not about to end.
 func (s *server) ready(w http.ResponseWriter, r *http.Request) error {
+	select {
+	case <-s.ending:
+		return plain(w, http.StatusServiceUnavailable, "ending")
+	default:
+	}
 	ctx, cancel := context.WithTimeout(r.Context(), 2*time.Second)
 	defer cancel()
 	if err := s.lab.Ready(ctx); err != nil {

@@ -74,7 +74,9 @@ func (s *server) logged(next http.Handler) http.Handler {
 			if strings.HasPrefix(r.URL.Path, "/static/") || r.URL.Path == page.HealthURL || r.URL.Path == page.ReadyURL {
 				level = slog.LevelDebug
 			}
-			s.log.Log(r.Context(), level, "request", "request", c.ID, "method", r.Method, "route", chi.RouteContext(r.Context()).RoutePattern(),
+			route := chi.RouteContext(r.Context()).RoutePattern()
+			s.counted.note(r.Method, route, ww.Status(), time.Since(began))
+			s.log.Log(r.Context(), level, "request", "request", c.ID, "method", r.Method, "route", route,
 				"path", r.URL.Path, "status", ww.Status(), "bytes", ww.BytesWritten(), "ms", time.Since(began).Milliseconds(),
 				"account", c.Actor.Name, "from", s.clientAddr(r))
 		}()

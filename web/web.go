@@ -10,6 +10,7 @@ import (
 	"strings"
 
 	"github.com/go-chi/chi/v5"
+	"github.com/prometheus/client_golang/prometheus"
 
 	"ratehouse/store"
 	"ratehouse/web/api"
@@ -21,9 +22,11 @@ import (
 type Config struct {
 	Lab            *store.Lab
 	Logger         *slog.Logger
-	BaseURL        string         // public address, "https://bench.example"; "" while nobody knows it
-	TrustedProxies []netip.Prefix // whose X-Forwarded-For is believed
-	BodyLimit      int64          // bytes of a request; 0: 1 MiB, and 10 MiB for uploads
+	BaseURL        string                // public address, "https://bench.example"; "" while nobody knows it
+	TrustedProxies []netip.Prefix        // whose X-Forwarded-For is believed
+	BodyLimit      int64                 // bytes of a request; 0: 1 MiB
+	Stopping       <-chan struct{}       // closed when the program is asked to end; nil: never
+	Metrics        prometheus.Registerer // where requests are counted; nil: nowhere
 }
 
 const (
@@ -42,6 +45,8 @@ type server struct {
 	tries   *tries
 	routes  []route
 	api     *api.API
+	ending  <-chan struct{}
+	counted *metrics
 	nav     []page.NavItem
 	foreign *http.CrossOriginProtection
 }
@@ -63,7 +68,7 @@ func newServer(c Config) (*server, error) {
 		c.BodyLimit = defaultBodyLimit
 	}
 	s := &server{lab: c.Lab, log: c.Logger, base: strings.TrimSuffix(c.BaseURL, "/"), proxies: c.TrustedProxies,
-		limit: c.BodyLimit, tries: newTries(c.Lab.Now), foreign: http.NewCrossOriginProtection()}
+		ending: c.Stopping, counted: newMetrics(c.Metrics), limit: c.BodyLimit, tries: newTries(c.Lab.Now), foreign: http.NewCrossOriginProtection()}
 	if s.base != "" {
 		u, err := url.Parse(s.base)
 		if err != nil || u.Host == "" || u.Scheme != "http" && u.Scheme != "https" || u.Path != "" {

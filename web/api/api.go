@@ -119,7 +119,8 @@ func operation(method, path, id, summary string, right store.Right, errors ...in
 	}
 	slices.Sort(errors)
 	return huma.Operation{Method: method, Path: Prefix + path, OperationID: id, Summary: summary, Errors: slices.Compact(errors),
-		Security: []map[string][]string{{"bearer": {string(scopeOf[right])}}}, Metadata: map[string]any{"right": right}}
+		SkipValidateBody: true, // read by our own strict reader
+		Security:         []map[string][]string{{"bearer": {string(scopeOf[right])}}}, Metadata: map[string]any{"right": right}}
 }
 
 // bodyOf makes T the documented body of an operation already registered. Bodies are read strictly by

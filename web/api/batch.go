@@ -11,6 +11,7 @@ import (
 	"net/http"
 	"strings"
 	"time"
+	"unicode/utf8"
 
 	"github.com/danielgtaylor/huma/v2"
 
@@ -145,7 +146,10 @@ func (a *API) register(ctx context.Context, in *registerIn) (*createdOut, error)
 	}
 	if in.Key == "" {
 		made, err := a.lab.Register(ctx, actorOf(ctx), n)
-		return created(registered(&made)), err
+		if err != nil {
+			return nil, err
+		}
+		return created(registered(&made)), nil
 	}
 	if !goodKey(in.Key) {
 		return nil, problem(http.StatusUnprocessableEntity, "key_form")
@@ -234,7 +238,7 @@ type listOut struct {
 
 func (a *API) listBatches(ctx context.Context, in *listIn) (*listOut, error) {
 	if strings.ContainsRune(in.Cursor, 0) {
-		return nil, problem(http.StatusUnprocessableEntity, "cursor_unknown")
+		return nil, &store.Error{Kind: store.KindInvalid, Code: "cursor_unknown", Field: "cursor"}
 	}
 	list, err := a.lab.Batches(ctx, actorOf(ctx), store.BatchFilter{Most: in.Limit}, in.Cursor)
 	if err != nil {
@@ -258,7 +262,7 @@ type codeIn struct {
 }
 
 func (a *API) getBatch(ctx context.Context, in *codeIn) (*batchOut, error) {
-	if err := sane(in.Code, "no_batch", "code"); err != nil {
+	if err := sane(in.Code, "no_batch", "code", printable(in.Code)); err != nil {
 		return nil, err
 	}
 	actor := actorOf(ctx)
@@ -279,9 +283,9 @@ func (a *API) getBatch(ctx context.Context, in *codeIn) (*batchOut, error) {
 }
 
 // sane answers like an unknown name where the database would not even take it.
-func sane(s, code, arg string) error {
-	if strings.ContainsRune(s, 0) || strings.ToValidUTF8(s, "") != s {
-		return problem(http.StatusNotFound, code, arg, printable(s))
+func sane(s, code string, args ...string) error {
+	if strings.ContainsRune(s, 0) || !utf8.ValidString(s) {
+		return problem(http.StatusNotFound, code, args...)
 	}
 	return nil
 }
@@ -293,7 +297,7 @@ type sheetsOut struct {
 }
 
 func (a *API) getSheets(ctx context.Context, in *codeIn) (*sheetsOut, error) {
-	if err := sane(in.Code, "no_batch", "code"); err != nil {
+	if err := sane(in.Code, "no_batch", "code", printable(in.Code)); err != nil {
 		return nil, err
 	}
 	var text bytes.Buffer

@@ -35,6 +35,12 @@ type Record json.RawMessage
 // MarshalJSON gives the text unchanged.
 func (r Record) MarshalJSON() ([]byte, error) { return r, nil }
 
+// UnmarshalJSON keeps the text as it came.
+func (r *Record) UnmarshalJSON(text []byte) error {
+	*r = append((*r)[:0], text...)
+	return nil
+}
+
 // Schema says no more than that it is an object.
 func (Record) Schema(huma.Registry) *huma.Schema {
 	return &huma.Schema{Type: huma.TypeObject, AdditionalProperties: true}
@@ -49,7 +55,7 @@ type certificateOut struct {
 }
 
 func (a *API) getCertificate(ctx context.Context, in *numberIn) (*certificateOut, error) {
-	if err := sane(in.Number, "no_certificate", "number"); err != nil {
+	if err := sane(in.Number, "no_certificate", "number", printable(in.Number)); err != nil {
 		return nil, err
 	}
 	c, err := a.lab.Certificate(ctx, actorOf(ctx), in.Number)

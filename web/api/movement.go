@@ -101,10 +101,10 @@ type movementOut struct {
 }
 
 func (a *API) getMovement(ctx context.Context, in *movementIn) (*movementOut, error) {
-	if err := sane(in.Code, "no_batch", "code"); err != nil {
+	if err := sane(in.Code, "no_batch", "code", printable(in.Code)); err != nil {
 		return nil, err
 	}
-	if err := sane(in.Serial, "no_movement", "serial"); err != nil {
+	if err := sane(in.Serial, "no_movement", "serial", printable(in.Serial), "code", in.Code); err != nil {
 		return nil, err
 	}
 	s, err := a.lab.MovementSheet(ctx, actorOf(ctx), in.Code, in.Serial)

@@ -97,7 +97,7 @@ func (RefusalCode) Schema(r huma.Registry) *huma.Schema {
 var itemCodes = []string{"not_object", "unknown_field", "field_missing", "field_type", "field_list", "time_form", "text_nul", "id_form"}
 
 // numberCodes are what can be wrong with a number.
-var numberCodes = []string{string(sheet.NotNumber), string(sheet.OtherCharacter), string(sheet.Exponent), string(sheet.SignApart), string(sheet.TooFine),
+var numberCodes = []string{string(sheet.NotNumber), string(sheet.OtherCharacter), string(sheet.Exponent), string(sheet.SignApart), string(sheet.TooFine), string(sheet.TooLarge),
 	string(sheet.DecimalComma), string(sheet.AmbiguousComma), string(sheet.Grouping), string(sheet.IsFormula), string(sheet.Blank)}
 
 // RefusalCodes is the closed list of codes of refused items.

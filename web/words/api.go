@@ -28,4 +28,11 @@ var _ = []struct{}{
 	fault("scope_missing", "The token lacks the scope {scope}. Ask the laboratory manager for one that has it.", "Il manque au jeton la portée {scope}. Demandez à la direction du laboratoire un jeton qui l’a.", "Dem Token fehlt der Bereich {scope}. Bitten Sie die Laborleitung um eines, das ihn hat."),
 	fault("key_form", "An Idempotency-Key has up to 200 printable ASCII characters without blanks.", "Une Idempotency-Key a jusqu’à 200 caractères ASCII imprimables sans espaces.", "Ein Idempotency-Key hat bis zu 200 druckbare ASCII-Zeichen ohne Leerzeichen."),
 	fault("not_built", "This version cannot do that yet. Nothing was saved.", "Cette version ne sait pas encore le faire. Rien n’a été enregistré.", "Diese Version kann das noch nicht. Es wurde nichts gespeichert."),
+
+	// What two at once can meet, in whatever they do.
+	fault("depositor_code_taken", "A depositor with this code was made at the same moment. Send it again.", "Un déposant avec ce code a été créé au même moment. Renvoyez la demande.", "Ein Auftraggeber mit diesem Code wurde im selben Augenblick angelegt. Senden Sie es noch einmal."),
+	fault("calibre_code_taken", "A calibre with this code was made at the same moment. Send it again.", "Un calibre avec ce code a été créé au même moment. Renvoyez la demande.", "Ein Kaliber mit diesem Code wurde im selben Augenblick angelegt. Senden Sie es noch einmal."),
+	fault("holder_code_taken", "A holder with this code was made at the same moment. Send it again.", "Un porte-mouvements avec ce code a été créé au même moment. Renvoyez la demande.", "Ein Werkhalter mit diesem Code wurde im selben Augenblick angelegt. Senden Sie es noch einmal."),
+	fault("place_taken", "Somebody put a movement into this place at the same moment. Choose another one.", "Quelqu’un a mis un mouvement à cet emplacement au même moment. Choisissez-en un autre.", "Jemand hat im selben Augenblick ein Werk auf diesen Platz gelegt. Wählen Sie einen anderen."),
+	fault("movement_placed_twice", "Somebody gave this movement a place at the same moment. Look where it lies now.", "Quelqu’un a donné un emplacement à ce mouvement au même moment. Voyez où il se trouve.", "Jemand hat diesem Werk im selben Augenblick einen Platz gegeben. Sehen Sie nach, wo es liegt."),
 }
