@@ -48,8 +48,8 @@ export function createField({ form, input, codes, word, onEnter, onMove, onType 
   function keydown(e) {
     if (e.ctrlKey || e.metaKey || e.altKey || e.isComposing) return;
     const letter = e.key.length === 1 ? e.key.toUpperCase() : "";
-    if (/^[0-9+\-−.,]$/.test(e.key)) type(e.key);
-    else if (codes[letter]) observe(letter);
+    if (/^[0-9+\-−.,]$/.test(e.key)) return; // comes as input below
+    if (codes[letter]) observe(letter);
     else if (e.key === "Backspace" || e.key === "Delete") press("delete");
     else if (e.key === "Escape") set({});
     else if (moves[e.key]) onMove(moves[e.key]);
@@ -64,10 +64,13 @@ export function createField({ form, input, codes, word, onEnter, onMove, onType 
   }
 
   input.addEventListener("keydown", keydown);
+  // Typed, pasted, dictated: what belongs to a number goes through type, everything else stays out.
   input.addEventListener("beforeinput", (e) => {
-    e.preventDefault(); // what did not come by a key: pasted, dictated
+    if (e.inputType === "insertLineBreak") return; // Enter sends the form
+    e.preventDefault();
     for (const sign of e.data ?? e.dataTransfer?.getData("text") ?? "") if (/[0-9+\-−.,]/.test(sign)) type(sign);
   });
+  input.addEventListener("input", show); // an input method that cannot be prevented: the field shows what counts
   form.addEventListener("click", (e) => {
     const button = e.target.closest("[data-key], [data-code]");
     if (!button) return;
@@ -88,7 +91,7 @@ export function createField({ form, input, codes, word, onEnter, onMove, onType 
     if (e.target === input || at?.closest("input, textarea, select, [contenteditable]")) return;
     const digit = /^[0-9+\-−.,]$/.test(e.key);
     if (!digit && (at?.closest("a, button, summary, [tabindex]") || !moves[e.key])) return;
-    input.focus();
+    input.focus(); // what the key types follows the focus
     keydown(e);
   });
 
