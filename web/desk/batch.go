@@ -128,7 +128,7 @@ func (v batchView) cells() []page.Cell {
 			c.Span(tolerance(b))))))
 	}
 	cells = append(cells, page.TextCell(c.Say(words.Programme), c.Say(words.ProgrammeVersion.With(b.Programme.Title, b.Programme.Version))),
-		page.TextCell(c.Say(words.Started), c.Date(b.StartsAt)), page.TextCell(c.Say(v.endLabel()), c.Date(b.Due(b.LastStep()))),
+		page.TextCell(c.Say(words.TrialFromTo), c.Say(words.DateToDate.With(c.Date(b.StartsAt), c.Date(b.Due(b.LastStep()))))),
 		page.TextCell(c.Say(words.Where), v.where()))
 	if v.may.verdicts {
 		cells = append(cells, page.TextCell(c.Say(words.DecisionRule), c.Say(decision(b.Programme))))
@@ -164,13 +164,6 @@ func (v batchView) dayText() string {
 		return c.Say(day)
 	}
 	return c.Say(words.DayAndReading.With(day, v.due, words.ReadOf.With(r.Read, r.Going)))
-}
-
-func (v batchView) endLabel() words.Text {
-	if v.due < 0 {
-		return words.Ended
-	}
-	return words.Ends
 }
 
 // where lists the holders, a long list by its ends.

@@ -22,7 +22,6 @@ type batchesView struct {
 // batchLine is one batch of the list.
 type batchLine struct {
 	URL, Code, For string
-	Size           string
 	Strip          part.Strip
 	State          string
 	When           string
@@ -61,7 +60,8 @@ func (d *Desk) Batches(w http.ResponseWriter, r *http.Request) error {
 }
 
 func batchLineOf(c *page.Context, b *store.BatchLine) batchLine {
-	v := batchLine{URL: page.BatchURL(b.Batch.Code), Code: b.Batch.Code, For: forWhom(c, &b.Batch), Size: c.Count(b.Batch.Size),
+	v := batchLine{URL: page.BatchURL(b.Batch.Code), Code: b.Batch.Code,
+		For:   c.Say(words.SizeAndCalibre.With(words.Movements.With(b.Batch.Size), words.Raw(forWhom(c, &b.Batch)))),
 		Strip: part.StripOf(c.Printer, b.Batch.Programme, closedDays(&b.Batch, b.Due), nil), HasRemarks: b.OpenRemarks > 0, Remarks: c.Count(b.OpenRemarks)}
 	v.when(c, b)
 	if s := b.Summary; s != nil {

@@ -164,12 +164,6 @@ func (v movementView) cells() []page.Cell {
 		stands = judgedAs(v.standing())
 	}
 	cells := []page.Cell{{Label: c.Say(words.Standing), Body: standsCell(c, stands, v.failedIn())}}
-	if v.may.verdicts {
-		if i, margin, ok := v.result.NearestMargin(); ok {
-			k := b.Programme.Criteria[i]
-			cells = append(cells, page.TextCell(c.Say(words.NearestLimit), c.Say(words.MarginOf.With(k.Symbol, c.Margin(margin, words.Decimals(k)), words.Unit(k.Unit)))))
-		}
-	}
 	cells = append(cells, page.TextCell(c.Say(words.Presentation), c.Say(presentation(m.Attempt))),
 		page.TextCell(c.Say(words.Programme), c.Say(words.ProgrammeVersion.With(b.Programme.Title, b.Programme.Version))),
 		page.TextCell(c.Say(words.TrialFromTo), c.Say(words.DateToDate.With(c.Date(b.StartsAt), c.Date(b.Due(b.LastStep()))))))
