@@ -141,9 +141,9 @@ func (v movementView) sheet() page.Sheet {
 
 func paperWord(kind string) words.Text {
 	if kind == "certificate" {
-		return words.PaperCertificate
+		return words.SheetCertificate
 	}
-	return words.PaperRejection
+	return words.SheetRejection
 }
 
 func (v movementView) sub() string {
