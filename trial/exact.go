@@ -266,17 +266,24 @@ func appendScaled(dst []byte, q int64, places int) []byte {
 	if q < 0 {
 		dst = append(dst, '-')
 	}
-	scale := uint64(pow10[places])
-	dst = strconv.AppendUint(dst, u/scale, 10)
 	if places == 0 {
-		return dst
+		return strconv.AppendUint(dst, u, 10)
 	}
-	dst = append(dst, '.')
-	part := u % scale
-	for s := scale / 10; s > 0; s /= 10 {
-		dst = append(dst, byte('0'+part/s%10))
+	var digits [24]byte // from the last backwards: 20 digits and a point at most
+	at := len(digits)
+	for ; places > 0; places-- {
+		at--
+		digits[at] = byte('0' + u%10)
+		u /= 10
 	}
-	return dst
+	at--
+	digits[at] = '.'
+	if u < 10 {
+		at--
+		digits[at] = byte('0' + u)
+		return append(dst, digits[at:]...)
+	}
+	return append(strconv.AppendUint(dst, u, 10), digits[at:]...)
 }
 
 // abs64 is |x| without overflow.

@@ -38,7 +38,7 @@ func newLines(r io.Reader) (*lines, error) {
 	case len(head) >= 2 && head[0] == 0xfe && head[1] == 0xff:
 		rest = newUTF16(io.MultiReader(bytes.NewReader(head[2:]), r), true)
 	}
-	return &lines{r: rest, buf: make([]byte, 1<<18)}, nil
+	return &lines{r: rest, buf: make([]byte, 1<<16)}, nil
 }
 
 // next gives the next line without its end, valid until the next call; io.EOF after the last. A

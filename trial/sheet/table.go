@@ -133,27 +133,33 @@ func (t *table) next() (fault *Refusal, countable bool, err error) {
 	if err != nil {
 		return nil, false, err
 	}
+	fault, countable = t.row(line)
+	return fault, countable, nil
+}
+
+// row takes one line apart; nil stands for one too long.
+func (t *table) row(line []byte) (fault *Refusal, countable bool) {
 	if line == nil {
-		return refuse(LongLine, strconv.Itoa(mostLine)).at(t.line, t.names[0]), false, nil
+		return refuse(LongLine, strconv.Itoa(mostLine)).at(t.line, "serial"), false
 	}
 	valid := utf8.Valid(line)
 	if fault = t.split(line); fault != nil {
-		return fault.at(t.line, fault.Column), false, nil
+		return fault.at(t.line, fault.Column), false
 	}
 	if len(t.cells) != len(t.names) {
 		if !valid {
-			return refuse(BadText, badBytes(line)).at(t.line, "serial"), false, nil
+			return refuse(BadText, badBytes(line)).at(t.line, "serial"), false
 		}
-		return refuse(CellCount, strconv.Itoa(len(t.cells)), strconv.Itoa(len(t.names))).at(t.line, "serial"), false, nil
+		return refuse(CellCount, strconv.Itoa(len(t.cells)), strconv.Itoa(len(t.names))).at(t.line, "serial"), false
 	}
 	if !valid {
 		for i, cell := range t.cells {
 			if !utf8.Valid(cell) {
-				return refuse(BadText, badBytes(cell)).at(t.line, t.names[i]), true, nil
+				return refuse(BadText, badBytes(cell)).at(t.line, t.names[i]), true
 			}
 		}
 	}
-	return nil, true, nil
+	return nil, true
 }
 
 // split cuts a line into trimmed cells.
