@@ -216,7 +216,6 @@ func TestCanonicalStruct(t *testing.T) {
 		In    []inner           `json:"in"`
 		Any   any               `json:"any"`
 		Left  string            `json:"-"`
-		Dash  bool              `json:"-,"`
 		Num   json.Number       `json:"num"`
 		Array [2]int            `json:"array"`
 		Hash  Hash              `json:"hash"`
