@@ -35,8 +35,8 @@ func runAccount(ctx context.Context, p program, args []string) int {
 	flags.StringVar(&n.Language, "language", "", "")
 	flags.Usage = func() { accountFlags(p.stderr) }
 	verb, rest := verbOf(args)
-	if err := flags.Parse(rest); err != nil {
-		return exitUsage
+	if code, ok := parsed(flags.Parse(rest)); !ok {
+		return code
 	}
 	switch {
 	case verb == "list" && flags.NArg() == 0:

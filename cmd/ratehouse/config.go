@@ -80,6 +80,18 @@ func flagsOf(p program, name string, c *config, list []setting) *flag.FlagSet {
 	return f
 }
 
+// parsed tells whether the flags could be read, and with what code to end if not: asking for help is
+// no mistake.
+func parsed(err error) (code int, ok bool) {
+	switch {
+	case errors.Is(err, flag.ErrHelp):
+		return exitDone, false
+	case err != nil:
+		return exitUsage, false
+	}
+	return exitDone, true
+}
+
 // listSettings prints the settings for -h with their variables; no value of the environment is shown.
 func listSettings(w io.Writer, list []setting) {
 	fmt.Fprint(w, "\nSettings, by flag or by the environment; the flag wins:\n")

@@ -22,8 +22,9 @@ func migrateFlags(w io.Writer) {
 func runMigrate(ctx context.Context, p program, args []string) int {
 	var c config
 	flags := flagsOf(p, "migrate", &c, databaseSettings())
-	if err := flags.Parse(args); err != nil {
-		return exitUsage
+	flags.Usage = func() { migrateFlags(p.stderr) }
+	if code, ok := parsed(flags.Parse(args)); !ok {
+		return code
 	}
 	if err := c.check(); err != nil {
 		return p.fail("migrate", err)

@@ -34,8 +34,8 @@ func runServe(ctx context.Context, p program, args []string) int {
 	flags := flagsOf(p, "serve", &s.config, settings())
 	flags.DurationVar(&s.grace, "grace", 0, "")
 	flags.Usage = func() { serveFlags(p.stderr) }
-	if err := flags.Parse(args); err != nil {
-		return exitUsage
+	if code, ok := parsed(flags.Parse(args)); !ok {
+		return code
 	}
 	s.program, s.log = p, slog.New(slog.NewTextHandler(p.stderr, nil))
 	if err := s.config.check(); err != nil {
@@ -63,6 +63,9 @@ func (s *service) run(ctx context.Context) (err error) {
 		return err
 	}
 	defer func() { err = errors.Join(err, d.close(ctx)) }()
+	if s.private() && d.cluster == nil {
+		return fmt.Errorf("the folder %s is in use by another running program: stop that one first, or choose another folder", s.Data)
+	}
 	if err := refuseOwner(ctx, d.app); err != nil {
 		return err
 	}

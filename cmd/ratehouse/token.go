@@ -51,8 +51,8 @@ func runToken(ctx context.Context, p program, args []string) int {
 	ends := flags.String("ends", "", "")
 	flags.Usage = func() { tokenFlags(p.stderr) }
 	verb, rest := verbOf(args)
-	if err := flags.Parse(rest); err != nil {
-		return exitUsage
+	if code, ok := parsed(flags.Parse(rest)); !ok {
+		return code
 	}
 	if *ends != "" {
 		last, err := time.Parse(time.DateOnly, *ends)
