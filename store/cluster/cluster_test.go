@@ -6,10 +6,8 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
-	"runtime"
 	"strings"
 	"testing"
-	"time"
 
 	"github.com/jackc/pgx/v5"
 )
@@ -188,32 +186,6 @@ func TestStartFails(t *testing.T) {
 		t.Errorf("still running: %v %v", left, err)
 	}
 	start(t, Config{Dir: dir})
-}
-
-// The server must not hang on the thread of whoever called Start: the kernel's death signal comes
-// when the thread that forked it ends.
-func TestOutlivesTheCallersThread(t *testing.T) {
-	t.Parallel()
-	dir := filepath.Join(tempDir(t), "db")
-	var c *Cluster
-	done := make(chan struct{})
-	go func() {
-		defer close(done)
-		runtime.LockOSThread() // never unlocked: the thread ends with this goroutine
-		c = start(t, Config{Dir: dir, Throwaway: true})
-	}()
-	<-done
-	if c == nil {
-		return
-	}
-	select {
-	case <-c.Done():
-		t.Fatal("the server ended with the thread that called Start")
-	case <-time.After(time.Second): // far longer than a shutdown takes
-	}
-	if n := ask[int](t, c, "SELECT 1"); n != 1 {
-		t.Error(n)
-	}
 }
 
 // Where the path is too long for a socket, a short private folder is used and cleared away.
