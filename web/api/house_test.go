@@ -2,7 +2,6 @@ package api_test
 
 import (
 	"bytes"
-	"context"
 	"encoding/json"
 	"io"
 	"net/http"
@@ -16,7 +15,6 @@ import (
 	"github.com/getkin/kin-openapi/openapi3filter"
 	"github.com/getkin/kin-openapi/routers"
 	"github.com/getkin/kin-openapi/routers/legacy"
-	"github.com/jackc/pgx/v5"
 
 	"ratehouse/store"
 	"ratehouse/store/storetest"
@@ -179,14 +177,4 @@ func (h *house) check(t testing.TB, r *http.Request, a answer) {
 	if err := openapi3filter.ValidateResponse(t.Context(), in); err != nil {
 		t.Errorf("%s %s answered %d in a way the document does not describe: %v\n%s", r.Method, r.URL, a.status, err, a.text())
 	}
-}
-
-func connect(t *testing.T, dsn string) *pgx.Conn {
-	t.Helper()
-	conn, err := pgx.Connect(t.Context(), dsn)
-	if err != nil {
-		t.Fatal(err)
-	}
-	t.Cleanup(func() { conn.Close(context.WithoutCancel(t.Context())) })
-	return conn
 }
