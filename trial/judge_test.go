@@ -2,7 +2,6 @@ package trial_test
 
 import (
 	"encoding/json"
-	"fmt"
 	"math/rand/v2"
 	"os"
 	"path/filepath"
@@ -184,10 +183,14 @@ func check(t *testing.T, judges map[string]*trial.Judge, r []int64, known uint64
 		var byMilli, byRates trial.Result
 		j.Milli(r, known, &byMilli)
 		j.Rates(rates, &byRates)
-		sameAsOracle(t, fmt.Sprint("milli ", r), j, &byMilli, rates)
-		sameAsOracle(t, fmt.Sprint("rates ", r), j, &byRates, rates)
-		if !slices.Equal(byMilli.Unreachable(), byRates.Unreachable()) {
-			t.Errorf("%v category %s: unreachable %v and %v", r, category, byMilli.Unreachable(), byRates.Unreachable())
+		sameAsOracle(t, "milli", j, &byMilli, rates)
+		same := byMilli.Verdict == byRates.Verdict && slices.Equal(byMilli.Unreachable(), byRates.Unreachable())
+		for i, v := range byMilli.Values {
+			w := byRates.Values[i]
+			same = same && v.Known == w.Known && v.Outcome == w.Outcome && v.Cmp(w.Exact) == 0
+		}
+		if !same {
+			t.Errorf("%v category %s: by thousandths %+v, by rates %+v", r, category, byMilli.Values, byRates.Values)
 		}
 	}
 }
@@ -196,7 +199,7 @@ func sameAsOracle(t *testing.T, what string, j *trial.Judge, got *trial.Result, 
 	t.Helper()
 	want := askOracle(fromRates(rates), j.Category())
 	if got.Verdict.String() != want.verdict {
-		t.Errorf("%s category %s: %s, want %s", what, j.Category(), got.Verdict, want.verdict)
+		t.Errorf("%s %v category %s: %s, want %s", what, rates, j.Category(), got.Verdict, want.verdict)
 	}
 	for i, s := range symbols {
 		v := got.Values[i]
@@ -261,12 +264,11 @@ func TestMovementsOnTheLimit(t *testing.T) {
 		}
 		n++
 		check(t, judges, r, allDays)
-		for d := range r {
-			for _, step := range []int64{-1, 1} {
-				r[d] += step
-				check(t, judges, r, allDays)
-				r[d] -= step
-			}
+		for _, step := range []int64{-1, 1} {
+			d := rng.IntN(15)
+			r[d] += step
+			check(t, judges, r, allDays)
+			r[d] -= step
 		}
 		var got trial.Result
 		judges[category].Milli(r, allDays, &got)
@@ -357,7 +359,7 @@ func TestOddIntervalsAgainstOracle(t *testing.T) {
 		for _, j := range judges {
 			var got trial.Result
 			j.Rates(rates, &got)
-			sameAsOracle(t, fmt.Sprint("odd ", rates), j, &got, rates)
+			sameAsOracle(t, "odd intervals", j, &got, rates)
 		}
 	}
 }

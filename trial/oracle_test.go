@@ -19,6 +19,18 @@ var oracleLimits = map[string]map[string][2]string{
 	"2": {"M": {"-5", "8"}, "V": {"0", "3.4"}, "Vmax": {"0", "7"}, "D": {"-8", "10"}, "P": {"0", "15"}, "C": {"-0.7", "0.7"}, "R": {"-6", "6"}},
 }
 
+// oracleBounds are the same limits as numbers.
+var oracleBounds = func() map[string]map[string][2]*big.Rat {
+	all := map[string]map[string][2]*big.Rat{}
+	for category, limits := range oracleLimits {
+		all[category] = map[string][2]*big.Rat{}
+		for symbol, l := range limits {
+			all[category][symbol] = [2]*big.Rat{ratOf(l[0]), ratOf(l[1])}
+		}
+	}
+	return all
+}()
+
 var symbols = []string{"M", "V", "Vmax", "D", "P", "C", "R"}
 
 func ratOf(s string) *big.Rat {
@@ -82,8 +94,8 @@ func askOracle(r [16]*big.Rat, category string) oracle {
 			}
 			continue
 		}
-		l := oracleLimits[category][s]
-		o.inside[s] = v.Cmp(ratOf(l[0])) >= 0 && v.Cmp(ratOf(l[1])) <= 0
+		l := oracleBounds[category][s]
+		o.inside[s] = v.Cmp(l[0]) >= 0 && v.Cmp(l[1]) <= 0
 		if !o.inside[s] {
 			o.verdict = "fail"
 		}

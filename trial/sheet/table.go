@@ -26,9 +26,6 @@ type column struct {
 	optional bool
 }
 
-// errCells is a row whose cells cannot be told.
-var errCells = errors.New("cells")
-
 // openTable reads the header: the first line that is not blank. The error is a *Refusal, or the
 // reader's own.
 func openTable(r io.Reader, columns []column) (*table, error) {

@@ -187,7 +187,7 @@ func appendBare(dst []byte, symbol string) []byte { return append(dst, symbol...
 
 // appendCell appends a CSV cell exactly as given, in quotation marks only where needed.
 func appendCell(dst, cell []byte) []byte {
-	if bytes.IndexAny(cell, ",\"\r\n") < 0 {
+	if !bytes.ContainsAny(cell, ",\"\r\n") {
 		return append(dst, cell...)
 	}
 	dst = append(dst, '"')
