@@ -19,6 +19,7 @@ import (
 // Certificate is a paper as it was frozen, and what happened to it since.
 type Certificate struct {
 	Record     proof.Record
+	No         int // of the movement in its batch
 	JWS        string
 	Code       string // to be read aloud and typed beside the number
 	PublicKey  string // JWK
@@ -50,7 +51,7 @@ func (l *Lab) paper(ctx context.Context, number string) (Certificate, error) {
 // paperOf opens a stored paper with its signature checked: what was altered in the database, or put
 // under another number, is not shown as a paper.
 func paperOf(row rows.Certificate) (Certificate, error) {
-	c := Certificate{JWS: row.JWS, PublicKey: value(row.PublicJWK), Replaces: value(row.Replaces), ReplacedBy: value(row.ReplacedBy),
+	c := Certificate{No: int(row.No), JWS: row.JWS, PublicKey: value(row.PublicJWK), Replaces: value(row.Replaces), ReplacedBy: value(row.ReplacedBy),
 		RevokedAt: value(row.RevokedAt).UTC(), Revoked: value(row.Revoked)}
 	pub, err := proof.ParsePublicKey([]byte(c.PublicKey))
 	if err != nil {

@@ -7,6 +7,7 @@ import (
 	"ratehouse/web/desk"
 	"ratehouse/web/floor"
 	"ratehouse/web/page"
+	"ratehouse/web/paper"
 )
 
 // access says who may use a route at all: nobody needs to be signed in, or a right is needed.
@@ -33,6 +34,7 @@ type route struct {
 func (s *server) table() []route {
 	const get, post = http.MethodGet, http.MethodPost
 	bench, qa := floor.New(s.lab), desk.New(s.lab)
+	papers := paper.New(s.lab, guesses{s, newTries(s.lab.Now)})
 	return []route{
 		{get, "/", public, s.start},
 		{get, page.LoginURL, public, s.showLogin},
@@ -54,6 +56,13 @@ func (s *server) table() []route {
 		{get, "/batches/{code}/rounds/{k}/movement", needs(store.RightEnter), bench.Movement},
 		{post, "/batches/{code}/rounds/{k}/movement/remark", needs(store.RightRemark), bench.AddRemark},
 		{post, "/batches/{code}/rounds/{k}/movement/end", needs(store.RightEnd), bench.EndMovement},
+		{get, "/batches/{code}/release", needs(store.RightRelease), papers.Release},
+		{post, "/batches/{code}/release", needs(store.RightRelease), papers.PostRelease},
+		{get, "/batches/{code}/certificates", needs(store.RightCertificates), papers.Papers},
+		{get, "/batches/{code}/certificates/print", needs(store.RightCertificates), papers.Print},
+		{get, "/certificates/{number}", needs(store.RightCertificates), papers.Certificate},
+		{post, "/certificates/{number}/revoke", needs(store.RightRelease), papers.Revoke},
+		{get, page.VerifyURL, public, papers.Verify},
 		{get, page.HealthURL, public, s.health},
 		{get, page.ReadyURL, public, s.ready},
 		{get, page.BatchesURL, needs(store.RightBatches), qa.Batches},

@@ -1,4 +1,4 @@
-package paper
+package paper_test
 
 import (
 	"encoding/json"
@@ -15,6 +15,7 @@ import (
 	"ratehouse/store/proof"
 	"ratehouse/trial"
 	"ratehouse/web/page"
+	"ratehouse/web/paper"
 	"ratehouse/web/webtest"
 )
 
@@ -50,11 +51,7 @@ func kept(t testing.TB, r proof.Record) store.Certificate {
 func look(t *testing.T, list ...store.Certificate) *webtest.Tab {
 	t.Helper()
 	return webtest.Show(t, page.Sheet{Title: "Papers", Bare: true, Styles: []string{"paper.css"}}, func(c *page.Context) templ.Component {
-		var sheets []sheet
-		for _, l := range list {
-			sheets = append(sheets, open(l, string(c.Lang()), "1"))
-		}
-		return printed(sheets)
+		return paper.Drawn(string(c.Lang()), list...)
 	})
 }
 

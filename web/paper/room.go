@@ -224,6 +224,11 @@ func (s *sheet) name() string {
 	return s.say(words.PaperNamed.With(s.Heading, s.Number))
 }
 
+// table names a table so that it can be told from those of other papers on the page.
+func (s *sheet) table(what words.Text) string {
+	return s.say(words.TableOf.With(words.PaperNamed.With(what, s.Number)))
+}
+
 // elsewhere tells what stands on the second leaf.
 func (s *sheet) elsewhere() string {
 	var parts []string

@@ -72,7 +72,7 @@ var _ = []struct{}{
 	fault("hold:open_remark", "a remark is open", "une observation est ouverte", "eine Bemerkung ist offen"),
 	fault("hold:four_eyes", "another person must release it: you corrected or decided something on it, or entered much of it", "à émettre par une autre personne : vous y avez corrigé ou décidé, ou beaucoup saisi", "muss jemand anderes freigeben: Sie haben daran berichtigt, entschieden oder viel eingegeben"),
 	fault("hold:no_anchor", "the minute of its states is not anchored", "la minute de ses états n’est pas ancrée", "die Minute seiner Stände ist nicht verankert"),
-	fault("hold:read_ahead", "it was read before the trial ended", "relevé avant la fin de l’épreuve", "vor dem Ende der Prüfung abgelesen"),
+	fault("hold:read_ahead", "a reading lies ahead of the laboratory’s clock: wait a minute", "un relevé est en avance sur l’horloge du laboratoire : attendez une minute", "eine Ablesung liegt vor der Uhr des Labors: eine Minute warten"),
 }
 
 // Hold says why a movement cannot be released now.
