@@ -2,6 +2,7 @@ package store_test
 
 import (
 	"context"
+	"encoding/binary"
 	"fmt"
 	"math/rand/v2"
 	"net"
@@ -192,38 +193,65 @@ func TestBatchesPageByPage(t *testing.T) {
 	}
 }
 
-// trips counts how often a client turns to the database: every write after a read begins one.
-type trips struct {
+// asked counts what a connection asks the database: queries, and round trips (each ends with a Sync
+// or is a simple query).
+type asked struct{ queries, trips atomic.Int64 }
+
+// listening reads along with what the client sends: messages of one letter and a length, after a first
+// one without letter.
+type listening struct {
 	net.Conn
-	n     *atomic.Int64
-	wrote atomic.Bool
+	*asked
+	rest    []byte
+	started bool
 }
 
-func (c *trips) Write(b []byte) (int, error) {
-	if !c.wrote.Swap(true) {
-		c.n.Add(1)
+func (c *listening) Write(b []byte) (int, error) {
+	c.rest = append(c.rest, b...)
+	for {
+		head := 5
+		if !c.started {
+			head = 4
+		}
+		if len(c.rest) < head {
+			break
+		}
+		size := head - 4 + int(binary.BigEndian.Uint32(c.rest[head-4:]))
+		if len(c.rest) < size {
+			break
+		}
+		if c.started {
+			c.count(c.rest[0])
+		}
+		c.rest, c.started = c.rest[size:], true
 	}
 	return c.Conn.Write(b)
 }
 
-func (c *trips) Read(b []byte) (int, error) {
-	n, err := c.Conn.Read(b)
-	c.wrote.Store(false)
-	return n, err
+func (c *listening) count(letter byte) {
+	switch letter {
+	case 'E': // Execute
+		c.queries.Add(1)
+	case 'S': // Sync
+		c.trips.Add(1)
+	case 'Q': // Query
+		c.queries.Add(1)
+		c.trips.Add(1)
+	}
 }
 
 // counted opens the laboratory again with a connection that counts trips.
-func counted(t *testing.T, h *storetest.House) (*store.Lab, *atomic.Int64) {
+func counted(t *testing.T, h *storetest.House) (*store.Lab, *asked) {
 	t.Helper()
 	config, err := pgx.ParseConfig(h.DB.App)
 	if err != nil {
 		t.Fatal(err)
 	}
-	dial, n := config.DialFunc, &atomic.Int64{}
+	dial, n := config.DialFunc, &asked{}
 	lab, err := store.Open(t.Context(), store.Config{DSN: h.DB.App, Clock: h.Clock.Now, Engine: "test", Conns: 1,
 		Dial: func(ctx context.Context, network, addr string) (net.Conn, error) {
 			c, err := dial(ctx, network, addr)
-			return &trips{Conn: c, n: n}, err
+			return &listening{Conn: c, asked: n}, err
 		}})
 	if err != nil {
 		t.Fatal(err)
@@ -240,11 +268,11 @@ func TestBatchesTripsAreConstant(t *testing.T) {
 	lab, n := counted(t, h)
 	cost := func() int64 {
 		t.Helper()
-		before := n.Load()
+		before := n.trips.Load()
 		if _, err := lab.Batches(t.Context(), h.Lead, store.BatchFilter{}, ""); err != nil {
 			t.Fatal(err)
 		}
-		return n.Load() - before
+		return n.trips.Load() - before
 	}
 	batches := 0
 	change := func() {

@@ -141,9 +141,9 @@ func (v movementView) sheet() page.Sheet {
 
 func paperWord(kind string) words.Text {
 	if kind == "certificate" {
-		return words.SheetCertificate
+		return words.PaperCertificate
 	}
-	return words.SheetRejection
+	return words.PaperRejection
 }
 
 func (v movementView) sub() string {

@@ -220,6 +220,9 @@ func (v movementView) lineNotes(l *store.ReadingLine, beside []store.ReadingLine
 	if l.EnteredBy != l.ReadBy {
 		add(words.NoteEnteredBy.With(l.EnteredBy))
 	}
+	if l.Method != store.Typed && l.Method != "" {
+		add(words.ReadingMethod(string(l.Method)))
+	}
 	if l.Station != "" {
 		add(words.NoteStation.With(l.Station))
 	}
