@@ -51,6 +51,7 @@ func (s *server) table() []route {
 		{post, "/batches/{code}/rounds/{k}/readings", needs(store.RightEnter), bench.SaveReadings},
 		{post, "/batches/{code}/rounds/{k}/open", needs(store.RightEnter), bench.OpenRound},
 		{post, "/batches/{code}/rounds/{k}/close", needs(store.RightEnter), bench.CloseRound},
+		{get, "/batches/{code}/rounds/{k}/sheet", needs(store.RightEnter), bench.DaySheet},
 		{get, "/batches/{code}/rounds/{k}/remark", needs(store.RightEnter), bench.RoundRemark},
 		{post, "/batches/{code}/rounds/{k}/remark", needs(store.RightRemark), bench.AddRemark},
 		{get, "/batches/{code}/rounds/{k}/movement", needs(store.RightEnter), bench.Movement},

@@ -26,8 +26,9 @@ type registerView struct {
 	calibres   []page.Option
 	depositors []page.Option
 	types      []typeOption
-	wind       []string // what each programme wants before round 0
-	lift       bool     // offers to test certified numbers again
+	wind       string // what the programmes want before round 0
+	lift       bool   // offers to test certified numbers again
+	first      string // fault of the numbers
 	preview    preview
 }
 
@@ -91,8 +92,7 @@ func (f *Floor) RegisterBatch(w http.ResponseWriter, r *http.Request) error {
 	if form.Has("check") {
 		return f.checkBatch(w, r, in)
 	}
-	err = in.refuse()
-	if err == nil && form.OK() {
+	if err = in.refuse(); err == nil && form.OK() {
 		var made store.Batch
 		if made, err = f.lab.Register(r.Context(), c.Actor, in.batch); err == nil {
 			return page.Redirect(w, r, page.BatchURL(made.Code))
@@ -103,10 +103,11 @@ func (f *Floor) RegisterBatch(w http.ResponseWriter, r *http.Request) error {
 	if err := f.takeFaults(r, in, err); err != nil {
 		return err
 	}
-	v, err := f.viewRegister(r, form)
-	if err != nil {
-		return err
+	v, verr := f.viewRegister(r, form)
+	if verr != nil {
+		return verr
 	}
+	v.preview, v.first = in.preview(err, v.types), in.first
 	v.lift = v.lift || in.certified && c.Actor.May(store.RightRelease)
 	return page.Render(w, r, form.Status(), registerPage(c, v))
 }
@@ -127,7 +128,7 @@ func (f *Floor) checkBatch(w http.ResponseWriter, r *http.Request, in *intake) e
 	if verr != nil {
 		return verr
 	}
-	v.preview = in.preview(err, v.types, f.lab)
+	v.preview = in.preview(err, v.types)
 	return page.Render(w, r, http.StatusOK, registerPage(in.c, v))
 }
 
@@ -138,6 +139,7 @@ type intake struct {
 	batch     store.NewBatch
 	lines     []*sheet.Refusal // of the list
 	certified bool
+	first     string // fault of the list
 }
 
 func (in *intake) read(r *http.Request) error {
@@ -268,6 +270,9 @@ func (f *Floor) takeFaults(r *http.Request, in *intake, err error) error {
 		}
 	}
 	for i, l := range lines {
+		if i == 0 {
+			in.first = in.c.Say(l)
+		}
 		if i == faultsMost {
 			in.form.Wrong("serials", words.MoreFaults.With(len(lines)-faultsMost))
 			break
@@ -305,7 +310,7 @@ func codeForm(e *store.Error) words.Text {
 }
 
 // preview says what the list would become: how many pieces in how many holders, or what is wrong.
-func (in *intake) preview(err error, types []typeOption, lab *store.Lab) preview {
+func (in *intake) preview(err error, types []typeOption) preview {
 	var v preview
 	n := len(in.batch.Pieces)
 	faults := in.lineFaults()
@@ -408,7 +413,7 @@ func (v *registerView) offer(c *page.Context, programmes []*trial.Programme) {
 			}
 		}
 		if p.Conditioning.Wind && p.Conditioning.MinHours > 0 {
-			v.wind = append(v.wind, c.Say(words.WindBy.With(p.Code, c.Celsius(p.Conditioning.TemperatureC.String()), p.Conditioning.MinHours)))
+			v.wind = strings.TrimSpace(v.wind + " " + c.Say(words.WindBy.With(p.Code, c.Celsius(p.Conditioning.TemperatureC.String()), p.Conditioning.MinHours)))
 		}
 	}
 }
@@ -427,11 +432,11 @@ func optionOf(c *page.Context, t store.HolderType) typeOption {
 	return typeOption{page.Option{Value: t.Code, Text: c.Say(words.HolderTypeSize.With(t.Title, words.HolderPlaces.With(len(t.Places())), size))}, h}
 }
 
-// firstFault cuts the faults of a long list to the first; the others stand in the summary at the top.
+// serials is the field of the numbers, with its first fault; the others stand in the summary at the top.
 func (v registerView) serials() page.Field {
 	d := v.form.Field("serials")
-	if why, _, more := strings.Cut(d.Why, ". "); more {
-		d.Why = why + ". …"
+	if v.first != "" {
+		d.Why = v.first
 	}
 	return d
 }

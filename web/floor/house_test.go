@@ -114,3 +114,9 @@ func (f *faulty) serve(t *testing.T, lab *store.Lab) string {
 	t.Cleanup(s.Close)
 	return s.URL
 }
+
+// run runs a statement in the page.
+func run(tab *webtest.Tab, js string) {
+	tab.T.Helper()
+	webtest.Eval[bool](tab, "(("+js+"), true)")
+}

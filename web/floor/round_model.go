@@ -96,7 +96,7 @@ func saying(c *page.Context, s *store.RoundSheet) map[string]string {
 		"saved": words.PlaceSaved.With(n, time), "kept": words.PlaceKeptNow.With(n), "lookAgain": words.PlaceReadAgain.With(n),
 		"lookOnceMore": words.PlaceOnceMore.With(n), "savedAfterLook": words.SavedAfterLook.With(blank("saved"), blank("why")),
 		"askAgain": words.AskReadAgain.With(n), "askType": words.AskTypeAgain.With(n), "askWhere": words.AskWhere.With(blank("holder"), n),
-		"typed": words.TypedValue.With(value), "conflict": words.ConflictTwo.With(blank("name"), value, time, blank("mine")),
+		"typed": words.TypedValue.With(value), "conflictText": words.ConflictTwo.With(blank("name"), value, time, blank("mine")),
 		"conflictAt": words.ConflictAt.With(time), "decide": words.ConflictDecide, "leave": words.LeaveTheirs.With(value), "put": words.PutMine.With(value),
 		"conflictReason": words.ConflictReason, "bothAgree": words.BothAgree.With(n, blank("name")), "notNumber": words.NotANumber,
 		"emptyField": words.EmptyField, "allRead": words.AllRead, "holderDone": words.HolderDone.With(blank("holder")), "goOnTo": words.GoOnTo.With(n),
@@ -107,7 +107,7 @@ func saying(c *page.Context, s *store.RoundSheet) map[string]string {
 		"placeSays": words.PlaceSays.With(n, blank("serial"), blank("state")), "placeNothing": words.PlaceNothing.With(n, blank("state")),
 		"stateToDo": words.PlaceToDo, "stateHere": words.PlaceHere, "stateRead": words.PlaceRead, "stateKept": words.PlaceKept, "stateLook": words.PlaceLook,
 		"stateEmpty": words.PlaceEmpty, "stateTrouble": words.LegendTrouble, "here": words.PlaceNow, "read": words.PlaceRead,
-		"again1": words.PlaceAgain, "trouble": words.PlaceTrouble, "draft": words.PlaceTyped,
+		"again1": words.PlaceAgain, "refused": words.PlaceRefused, "conflict": words.PlaceTwo, "draft": words.PlaceTyped,
 	}
 	said := map[string]string{}
 	for k, t := range list {

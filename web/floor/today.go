@@ -68,7 +68,7 @@ func viewToday(c *page.Context, t store.Today) todayView {
 		row := rowOf(c, r, t.Now)
 		if !isToday(c, r, t.Now) {
 			row.due = c.Weekday(r.Due)
-			row.when = c.Time(r.Due)
+			row.when, row.act = c.Time(r.Due), c.Say(words.RoundLook)
 			v.coming = append(v.coming, row)
 			continue
 		}
@@ -116,12 +116,15 @@ func rowOf(c *page.Context, r *store.Round, now time.Time) roundRow {
 	row := roundRow{
 		due: c.Time(r.Due), code: b.Code, sub: batchWords(c, b),
 		round: c.Say(words.FaultLine.With(words.RoundNumber.With(r.K), words.Raw(roundWords(c, b, r.Plan)))),
-		strip: part.StripOf(c.Printer, b.Programme, closedDays(r), nil), moved: part.MovedAt(b.Programme, r.K), acts: actWords(c, r.Plan),
+		strip: part.StripOf(c.Printer, b.Programme, closedDays(r), nil), moved: part.MovedAt(b.Programme, r.K),
 		ruler: part.Ruler{Done: r.Read, Whole: r.Going, Label: c.Say(words.MovementsReadIn.With(b.Code)), Live: r.State == store.RoundOpen},
 		url:   page.RoundURL(b.Code, r.K), care: careTags(c, r),
 	}
 	if out := b.Size - r.Going; out > 0 {
 		row.ruler.Text = c.Say(words.ReadOfMore.With(words.ReadOf.With(r.Read, r.Going), words.OutOfTrial.With(out)))
+	}
+	if acts := actWords(c, r.Plan); acts != "" {
+		row.acts = c.Say(words.AfterReading.With(words.Raw(acts)))
 	}
 	row.class, row.when, row.act = standing(c, r, now)
 	row.actSays = c.Say(words.RoundAndCode.With(r.K, b.Code))

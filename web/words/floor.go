@@ -95,7 +95,8 @@ var (
 	LegendTrouble = say("needs you", "à décider", "braucht Sie")
 	LegendOff     = say("out of the trial", "hors de l’épreuve", "nicht in der Prüfung")
 	PlaceAgain    = say("again", "à relire", "nochmals")
-	PlaceTrouble  = say("look", "à voir", "prüfen")
+	PlaceRefused  = say("refused", "refusé", "abgelehnt")
+	PlaceTwo      = say("two values", "deux valeurs", "zwei Werte")
 	PlaceTyped    = say("typed", "saisi", "getippt")
 
 	FieldState    = say1("Place {n}: state, s", "Emplacement {n} : état, s", "Platz {n}: Stand, s")

@@ -208,6 +208,7 @@ function start() {
     answers[event.answer.status](p, event.entry, event.answer);
     draw.place(p, here);
     if (here === p) label();
+    if (p.ask && p.ask.kind !== "look") tell(say("placeNothing", { n: p.n, state: say("stateTrouble") }));
     asks();
   });
 
@@ -217,7 +218,6 @@ function start() {
     const open = places.all.filter((p) => p.ask && !p.kept);
     $("asks").hidden = open.length === 0;
     $("asks").querySelector("ul").replaceChildren(...open.map(askItem));
-    if (open.some((p) => p.ask.kind !== "look")) tell(askText(open.at(-1)));
   }
 
   function askText(p) {
@@ -226,7 +226,7 @@ function start() {
     if (kind === "refused") return `${text}`;
     if (kind !== "conflict") return "";
     const time = clock(Date.parse(current.read_at));
-    return `${say("conflict", { name: current.read_by, value: shown(current.value), time, mine })} (${say("conflictAt", { time: clock(at) })}) ${say("decide")}`;
+    return `${say("conflictText", { name: current.read_by, value: shown(current.value), time, mine })} (${say("conflictAt", { time: clock(at) })}) ${say("decide")}`;
   }
 
   function askItem(p) {
@@ -346,7 +346,7 @@ function createDrawing() {
   }
 
   function standing(p, here) {
-    if (p.ask && p.ask.kind !== "look") return { state: "look trouble", word: say("trouble"), says: say("stateTrouble") };
+    if (p.ask && p.ask.kind !== "look") return { state: "look trouble", word: say(p.ask.kind), says: say("stateTrouble") };
     if (p.state === "look") return { state: p === here ? "look here" : "look", sign: "look", word: say("again1"), says: say("stateLook") };
     if (p.state === "off") return { state: "off", sign: "void", word: p.end, says: p.end };
     if (p.state === "empty") return { state: "empty", says: say("stateEmpty") };
