@@ -228,14 +228,34 @@ func few(rng *rand.Rand, most int) ([]trial.Rate, []int) {
 	return rates, blanks
 }
 
+// brink makes a movement that can just pass, or just not: one criterion exactly on a limit in
+// sevenths, then one of its days taken away and another moved by a hair.
+func brink(t *testing.T, rng *rand.Rand) ([]trial.Rate, []int) {
+	for {
+		symbol := symbols[rng.IntN(7)]
+		bound := milli(t, oracleLimits[[]string{"1", "2"}[rng.IntN(2)]][symbol][rng.IntN(2)])
+		rates, ok := onLimitBySevenths(rng, symbol, bound)
+		if !ok {
+			continue
+		}
+		// A variation on its limit keeps its pair and loses another day; the rest lose any.
+		day := 1 + rng.IntN(15)
+		rates[day-1] = trial.Rate{}
+		return rates, []int{day}
+	}
+}
+
 // CannotPass and Needed against Fourier-Motzkin elimination over the plain inequalities.
 func TestCannotPassAgainstElimination(t *testing.T) {
 	t.Parallel()
 	judges := bothJudges(t)
 	rng := rand.New(rand.NewPCG(3159, 6))
 	counts := map[string]int{}
-	for range 500 {
+	for n := range 750 {
 		rates, blanks := few(rng, 3)
+		if n%3 == 0 {
+			rates, blanks = brink(t, rng)
+		}
 		for category, j := range judges {
 			var got trial.Result
 			j.Rates(rates, &got)
@@ -345,7 +365,16 @@ func TestUnreachableAgainstElimination(t *testing.T) {
 	counts := map[bool]int{}
 	for range 400 {
 		rates, _ := few(rng, 3)
-		if rng.IntN(2) == 0 { // far out, where ±60 no longer helps
+		if rng.IntN(3) == 0 { // one rate so far off that the blank days must draw the mean after it
+			rates = make([]trial.Rate, 15)
+			for d := range 10 {
+				rates[d] = trial.RateOf(rng.Int64N(600))
+			}
+			rates[rng.IntN(10)] = trial.RateOf(11_000 + rng.Int64N(8000))
+			for range 1 + rng.IntN(2) {
+				rates[rng.IntN(10)] = trial.Rate{}
+			}
+		} else if rng.IntN(2) == 0 { // far out, where ±60 no longer helps
 			for d := range rates {
 				if rates[d].Known() && rng.IntN(3) == 0 {
 					rates[d] = trial.RateOf(rng.Int64N(1_200_001) - 600_000)

@@ -303,7 +303,8 @@ func (j *Judge) whole(rates []Rate, r []int64, known []uint64) bool {
 	return true
 }
 
-// fix copies rates rounded down to fixed point; false if one is beyond its range.
+// fix copies rates cut to fixed point, each off by less than one unit; false if one is beyond its
+// range.
 func (j *Judge) fix(rates []Rate, r []int64, known []uint64) bool {
 	ok := j.fixedBits > 0
 	for d, x := range rates {
@@ -316,17 +317,13 @@ func (j *Judge) fix(rates []Rate, r []int64, known []uint64) bool {
 			ok = false
 			continue
 		}
-		q, rem := bits.Div64(hi, lo, uint64(x.den))
+		q, _ := bits.Div64(hi, lo, uint64(x.den))
 		if q>>(rateBits+j.fixedBits) != 0 {
 			ok = false
 			continue
 		}
-		r[d] = int64(q)
-		if x.num < 0 {
-			r[d] = -int64(q)
-			if rem != 0 {
-				r[d]--
-			}
+		if r[d] = int64(q); x.num < 0 {
+			r[d] = -r[d]
 		}
 	}
 	return ok

@@ -403,6 +403,103 @@ func TestOddIntervalsOnTheLimit(t *testing.T) {
 	}
 }
 
+// sevenths gives a rate of 8/7 thousandths of s/d a count, through an interval of 21 h: almost none
+// has a finite binary form, so that fixed point never meets a limit exactly.
+func sevenths(count int64) trial.Rate { return trial.RateBetween(0, trial.State(count), 75_600) }
+
+// onLimitBySevenths makes a movement in sevenths with one criterion exactly on a limit; false if
+// the limit is no whole number of sevenths there.
+func onLimitBySevenths(rng *rand.Rand, symbol string, bound int64) ([]trial.Rate, bool) {
+	r := draw(rng, 1+rng.Int64N(900))
+	for d := range r {
+		r[d] = r[d] * 7 / 8
+	}
+	if bound*7%8 != 0 || !onLimit(r, symbol, bound*7/8, rng) {
+		return nil, false
+	}
+	rates := make([]trial.Rate, 15)
+	for d := range r {
+		rates[d] = sevenths(r[d])
+	}
+	return rates, true
+}
+
+func TestSeventhsOnTheLimit(t *testing.T) {
+	t.Parallel()
+	judges := bothJudges(t)
+	rng := rand.New(rand.NewPCG(3159, 11))
+	hits := map[string]int{}
+	for range 3000 {
+		category, symbol, side := []string{"1", "2"}[rng.IntN(2)], symbols[rng.IntN(7)], rng.IntN(2)
+		bound := milli(t, oracleLimits[category][symbol][side])
+		rates, ok := onLimitBySevenths(rng, symbol, bound)
+		if bound == 0 || !ok {
+			continue
+		}
+		var got trial.Result
+		judges[category].Rates(rates, &got)
+		sameAsOracle(t, symbol+" on the limit in sevenths", judges[category], &got, rates)
+		if got.Values[slices.Index(symbols, symbol)].Cmp(trial.Ratio(bound, 1000)) == 0 {
+			hits[symbol+[]string{" least", " most"}[side]]++
+		}
+	}
+	for _, s := range []string{"M least", "M most", "D least", "R most", "V most", "Vmax most", "P most", "C least"} {
+		if hits[s] < 5 {
+			t.Errorf("%s: %d movements on the limit", s, hits[s])
+		}
+	}
+}
+
+// Limits that are no decimals: no whole number of thousandths meets them.
+func TestFractionalLimits(t *testing.T) {
+	t.Parallel()
+	third := trial.Ratio(1, 3)
+	p := trial.ISO3159()
+	for i := range p.Criteria {
+		l := p.Criteria[i].Limits["1"]
+		if l.Max = l.Max.Add(third); l.HasMin {
+			l.Min = l.Min.Sub(third)
+		}
+		p.Criteria[i].Limits["1"] = l
+	}
+	j, err := trial.NewJudge(p, "1")
+	if err != nil {
+		t.Fatal(err)
+	}
+	rng := rand.New(rand.NewPCG(3159, 12))
+	exactly := 0
+	for range 8000 {
+		rates := make([]trial.Rate, 15)
+		base, known, spread := rng.Int64N(40)-20, rng.Uint64()|rng.Uint64(), 6+rng.Int64N(40)
+		for d := range rates {
+			if known>>d&1 == 1 { // thirds of 1 s/d, through 72 h; or whole s/d
+				rates[d] = trial.RateBetween(0, trial.State(1000*(base+rng.Int64N(spread))), 3*86_400)
+			}
+			if known>>20&1 == 1 && rates[d].Known() {
+				rates[d] = trial.RateOf(1000 * (base/3 + rng.Int64N(2)))
+			}
+		}
+		var got trial.Result
+		j.Rates(rates, &got)
+		want := askOracle(fromRates(rates), "1")
+		for i, s := range symbols {
+			if !got.Values[i].Known {
+				continue
+			}
+			inside := j.Limit(i).Contains(trial.FromRat(want.values[s]))
+			if (got.Values[i].Outcome == trial.Inside) != inside {
+				t.Fatalf("%v: %s = %s is %s", rates, s, want.values[s], got.Values[i].Outcome)
+			}
+			if want.values[s].Cmp(j.Limit(i).Max.Rat()) == 0 {
+				exactly++
+			}
+		}
+	}
+	if exactly < 10 {
+		t.Errorf("only %d times exactly on a limit", exactly)
+	}
+}
+
 func TestHugeRatesAreExactToo(t *testing.T) {
 	t.Parallel()
 	judges := bothJudges(t)
