@@ -98,6 +98,10 @@ func (j *Judge) Milli(rates []int64, known uint64, out *Result) {
 
 // MilliLong is Milli with any number of days: bit (d-1)%64 of known[(d-1)/64] is day d.
 func (j *Judge) MilliLong(rates []int64, known []uint64, out *Result) {
+	if len(j.all) == 1 {
+		j.Milli(rates, known[0], out)
+		return
+	}
 	set := make([]uint64, len(j.all))
 	for i := range set {
 		set[i] = known[i] & j.all[i]

@@ -144,9 +144,7 @@ func (p *plan) judge(r []int64, values []Value) (v Verdict, ok bool) {
 	for i := range p.passes {
 		far |= p.passes[i].any(r, values)
 	}
-	for i := range p.lines {
-		far |= p.lines[i].weigh(r, values)
-	}
+	far |= weigh(p.lines, r, values)
 	return p.done[p.gate(values)], far>>(rateBits+1) == 0
 }
 
@@ -173,19 +171,25 @@ func beyond(least, most int64) uint64 {
 	return uint64(least+reach) | uint64(reach-1-most)
 }
 
-// weigh computes one weighted sum.
+// weigh computes the weighted sums.
 //
 //go:noinline
-func (l *line) weigh(r []int64, values []Value) (far uint64) {
+func weigh(lines []line, r []int64, values []Value) (far uint64) {
 	const reach = 1 << rateBits
-	a, b, c, d := r[l.short[0].day], r[l.short[1].day], r[l.short[2].day], r[l.short[3].day]
-	n := l.short[0].weight*a + l.short[1].weight*b + l.short[2].weight*c + l.short[3].weight*d
-	far = uint64(a+reach) | uint64(b+reach) | uint64(c+reach) | uint64(d+reach)
-	for _, t := range l.long {
-		n += t.weight * r[t.day]
-		far |= uint64(r[t.day] + reach)
+	for i := range lines {
+		l := &lines[i]
+		a, b := r[l.short[0].day], r[l.short[1].day]
+		n := l.short[0].weight*a + l.short[1].weight*b
+		far |= uint64(a+reach) | uint64(b+reach)
+		a, b = r[l.short[2].day], r[l.short[3].day]
+		n += l.short[2].weight*a + l.short[3].weight*b
+		far |= uint64(a+reach) | uint64(b+reach)
+		for _, t := range l.long {
+			n += t.weight * r[t.day]
+			far |= uint64(r[t.day] + reach)
+		}
+		values[l.at].num = n
 	}
-	values[l.at].num = n
 	return far
 }
 

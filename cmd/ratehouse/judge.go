@@ -34,7 +34,9 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 	states := flags.Bool("states", false, "")
 	uncertainty := flags.String("uncertainty", "", "")
 	format := flags.String("format", "csv", "")
-	if err := flags.Parse(args); err != nil {
+	if err := flags.Parse(args); errors.Is(err, flag.ErrHelp) {
+		return exitDone
+	} else if err != nil {
 		return exitUsage
 	}
 	job := judgeJob{prog: trial.ISO3159(), states: *states, format: sheet.VerdictFormat(*format), stdout: stdout, stderr: stderr}
