@@ -37,10 +37,15 @@ type dayRow struct {
 	place, serial, ended string
 }
 
-// Rows of a leaf, and the rows that the head of a holder takes of them.
+// Heights on a leaf in tenths of a millimetre: what holders may fill, the head of one, a row, and a row
+// whose number takes two lines. print.css gives the sizes; a test measures that no leaf is longer than
+// its sheet.
 const (
-	leafRows = 22
-	headRows = 3
+	leafHeight = 1900
+	headHeight = 140
+	rowHeight  = 78
+	rowTwice   = 100
+	longSerial = 34
 )
 
 // DaySheet shows a round as leaves to print.
@@ -85,23 +90,42 @@ func viewDay(c *page.Context, s *store.RoundSheet) dayView {
 func leavesOf(c *page.Context, s *store.RoundSheet) (leaves []dayLeaf) {
 	left := 0
 	for i := range s.Holders {
-		h := dayHolder{code: s.Holders[i].Code}
 		rows := dayRows(c, &s.Holders[i])
 		for len(rows) > 0 {
-			if left < headRows+min(len(rows), leafRows-headRows) {
-				leaves, left = append(leaves, dayLeaf{}), leafRows
+			if len(leaves) == 0 || left < leafHeight && fitting(rows, left) < len(rows) {
+				leaves, left = append(leaves, dayLeaf{}), leafHeight
 			}
-			n := min(len(rows), left-headRows)
-			h.rows, rows = rows[:n], rows[n:]
+			n := fitting(rows, left)
 			last := &leaves[len(leaves)-1]
-			last.holders = append(last.holders, h)
-			left -= headRows + n
+			last.holders = append(last.holders, dayHolder{s.Holders[i].Code, rows[:n]})
+			left -= headHeight + heightOf(rows[:n])
+			rows = rows[n:]
 		}
 	}
 	for i := range leaves {
 		leaves[i].n, leaves[i].of = strconv.Itoa(i+1), strconv.Itoa(len(leaves))
 	}
 	return leaves
+}
+
+// fitting is how many of the rows go into so much height, below a head.
+func fitting(rows []dayRow, height int) int {
+	n := len(rows)
+	for n > 0 && headHeight+heightOf(rows[:n]) > height {
+		n--
+	}
+	return n
+}
+
+func heightOf(rows []dayRow) (sum int) {
+	for _, r := range rows {
+		if len(r.serial) > longSerial {
+			sum += rowTwice
+		} else {
+			sum += rowHeight
+		}
+	}
+	return sum
 }
 
 func dayRows(c *page.Context, h *store.HolderRound) (rows []dayRow) {

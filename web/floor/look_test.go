@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"testing"
 
+	"ratehouse/store"
 	"ratehouse/store/storetest"
 	"ratehouse/web/webtest"
 )
@@ -48,4 +49,44 @@ func TestRoundFitsTheTablet(t *testing.T) {
 			fits(t, tab, kind+" "+name)
 		}
 	}
+	for _, lang := range []string{"fr", "de"} { // longer words
+		tab.Resize(webtest.Wide)
+		tab.Press(`button[value=` + lang + `]`)
+		for name, size := range map[string]webtest.Size{"upright": webtest.Tablet, "lying": landscape} {
+			tab.Resize(size)
+			tab.Shot("round-" + lang + "-" + name)
+			fits(t, tab, lang+" "+name)
+		}
+	}
+}
+
+// Two hundred movements in forty strips, with long numbers: every holder stays in reach of one touch.
+func TestRoundOfForty(t *testing.T) {
+	t.Parallel()
+	h, tab := ready(t, 200, in("STRIP5"), func(n *store.NewBatch) {
+		n.Calibre, n.Depositor = "AVERLOU-FONTENAY-CALIBRE-4410-LONGUE", "MANUFACTURE-AVERLOU-FONTENAY-ET-ASSOCIES"
+		for i := range n.Pieces {
+			n.Pieces[i].Serial = "AVERLOU-FONTENAY/KW21 " + n.Pieces[i].Serial
+		}
+	})
+	if err := h.EndMovement(t.Context(), h.Lead, "26-001", "AVERLOU-FONTENAY/KW21 "+storetest.Serial(2), store.Void, "dropped here", store.Dropped); err != nil {
+		t.Fatal(err)
+	}
+	tab.Go("/batches/26-001/rounds/0")
+	tab.Keys("+1.0\r+2.0\r+3.0\r+4.0\r") // over the hole and the end of the strip
+	settled(tab)
+	if got := tab.Text("#which"); got != "2 of 40: STRIP5-0002" {
+		t.Errorf("after four readings over a hole: %q", got)
+	}
+	for name, size := range map[string]webtest.Size{"upright": webtest.Tablet, "lying": landscape, "bench": webtest.Wide} {
+		tab.Resize(size)
+		tab.Shot("round-forty-" + name)
+		fits(t, tab, "forty strips "+name)
+	}
+	tab.Click(`[data-tab="39"]`)
+	if got := tab.Text("#serial"); got != "AVERLOU-FONTENAY/KW21 S-0196" {
+		t.Errorf("at the last strip: %q", got)
+	}
+	tab.Shots("round-forty-last")
+	tab.AxeBoth()
 }

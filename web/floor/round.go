@@ -4,6 +4,7 @@ import (
 	"net/http"
 	"slices"
 	"strconv"
+	"strings"
 	"time"
 
 	"github.com/a-h/templ"
@@ -268,7 +269,7 @@ func short(serial string) string {
 	if len(r) <= most+1 {
 		return serial
 	}
-	return "…" + string(r[len(r)-most:])
+	return "…" + strings.TrimLeft(string(r[len(r)-most:]), " -/.")
 }
 
 func viewField(c *page.Context, s *store.RoundSheet, h *store.HolderRound, x *store.Seat) fieldView {
