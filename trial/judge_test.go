@@ -450,6 +450,33 @@ func TestSeventhsOnTheLimit(t *testing.T) {
 	}
 }
 
+// A tie in rounding that no enclosure can see: M is 1.5 exactly, made of sevenths.
+func TestTiesOfWideNumbers(t *testing.T) {
+	t.Parallel()
+	j := newJudge(t, "1")
+	for sum, want := range map[int64]string{13_125: "2", 21_875: "2", -4375: "0", -13_125: "-2", 13_126: "2", 13_124: "1"} {
+		rates := make([]trial.Rate, 15)
+		for d := range int64(10) {
+			rates[d] = sevenths(sum/10 + (d%2*2-1)*d*(10-d)) // apart from each other, by amounts that cancel
+		}
+		rates[0] = sevenths(sum/10 + sum%10)
+		var off int64
+		for d := range int64(10) {
+			off += (d%2*2 - 1) * d * (10 - d)
+		}
+		rates[9] = sevenths(sum/10 + 9 - off)
+		var got trial.Result
+		j.Rates(rates, &got)
+		m := got.Values[0]
+		if exact := trial.Ratio(8*sum, 70_000); m.Cmp(exact) != 0 {
+			t.Fatalf("M = %s, want %s", m.Exact, exact)
+		}
+		if m.Decimal(0) != want {
+			t.Errorf("%s prints %s, want %s", m.Exact, m.Decimal(0), want)
+		}
+	}
+}
+
 // Limits that are no decimals: no whole number of thousandths meets them.
 func TestFractionalLimits(t *testing.T) {
 	t.Parallel()
