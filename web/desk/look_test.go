@@ -64,6 +64,10 @@ func look(t *testing.T, base, name string, pages [][2]string) {
 			tab.Go(p[1])
 			tab.Shots("desk/" + p[0])
 			tab.AxeBoth()
+			tab.Resize(webtest.Tablet)
+			if wide := webtest.Eval[bool](tab, `document.documentElement.scrollWidth > innerWidth`); wide {
+				t.Error("the page is wider than a tablet")
+			}
 		})
 	}
 }
@@ -87,6 +91,22 @@ func TestPagesLook(t *testing.T) {
 		{"plain-batch", "/batches/26-121"},
 		{"plain-ratesheet", "/batches/26-121/movements/KW21-004504?do=end"},
 	})
+}
+
+// The longest words of the three languages are German.
+func TestGermanLook(t *testing.T) {
+	t.Parallel()
+	_, base := everyday(t)
+	tab := webtest.Start(t, base)
+	tab.SignIn("lead", storetest.Password)
+	tab.Press(`button[value=de]`)
+	for _, p := range [][2]string{{"batches-de", "/batches"}, {"batch-de", "/batches/26-118"}, {"ratesheet-de", "/batches/26-121/movements/KW21-004504?do=correct"}} {
+		tab.Go(p[1])
+		tab.Shot("desk/" + p[0])
+		if wide := webtest.Eval[bool](tab, `document.documentElement.scrollWidth > innerWidth`); wide {
+			t.Errorf("%s is wider than the screen", p[0])
+		}
+	}
 }
 
 func TestEmptyLook(t *testing.T) {

@@ -145,8 +145,6 @@ var (
 	FirstPresentation = say("first presentation", "première présentation", "Erstprüfung").unsure(FR)
 	TrialFromTo       = say("Trial", "Épreuve", "Prüfung")
 	DateToDate        = say2("{from} to {until}", "{from} à {until}", "{from} bis {until}")
-	SheetCertificate  = say("Certificate", "Bulletin", "Gangschein")
-	SheetRejection    = say("Rejection report", "Avis de refus", "Prüfbericht „nicht bestanden“").unsure(FR)
 	DailyRate         = say("Daily rate", "Marche diurne", "Täglicher Gang")
 	CannotFor         = say1("Cannot pass: no rates to come bring {criteria} inside.", "Éliminé : aucune marche à venir ne ramène {criteria} dans les limites.", "Ausgeschieden: Keine künftigen Gänge bringen {criteria} zurück.")
 	CannotTogether    = say("Cannot pass: no rates to come satisfy all criteria together.", "Éliminé : aucune marche à venir ne satisfait tous les critères ensemble.", "Ausgeschieden: Keine künftigen Gänge erfüllen alle Kriterien zusammen.")
