@@ -56,7 +56,6 @@ type demo struct {
 // batchPlan is one batch of the demo.
 type batchPlan struct {
 	code, calibre, depositor, prefix string
-	category                         string
 	size, first, rounds              int // rounds already read
 	start                            time.Time
 	entry                            store.EntryKind

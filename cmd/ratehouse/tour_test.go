@@ -29,18 +29,18 @@ func TestTour(t *testing.T) {
 	}
 	for _, stop := range []struct {
 		name, person, path string
-		paper              bool
+		readme             bool
 	}{
 		{"login", "", "/login", false},
-		{"today", "technician", "/today", false},
+		{"today", "technician", "/today", true},
 		{"new", "technician", "/batches/new", false},
-		{"round", "technician", "/batches/" + demoRunning + "/rounds/9", false},
+		{"round", "technician", "/batches/" + demoRunning + "/rounds/9", true},
 		{"batches", "lead", "/batches", false},
 		{"batch", "lead", "/batches/" + demoFinished, false},
-		{"running", "lead", "/batches/" + demoRunning, false},
+		{"running", "lead", "/batches/" + demoRunning, true},
 		{"trouble", "lead", "/batches/" + demoTrouble, false},
-		{"ratesheet", "lead", "/batches/" + demoTrouble + "/movements/OD44-119028", false},
-		{"release", "lead", "/batches/" + demoFinished + "/release", false},
+		{"ratesheet", "lead", "/batches/" + demoTrouble + "/movements/OD44-119028", true},
+		{"release", "lead", "/batches/" + demoFinished + "/release", true},
 		{"certificate", "lead", "/certificates/" + demoFinished + "-0001", true},
 	} {
 		t.Run(stop.name, func(t *testing.T) {
@@ -52,10 +52,12 @@ func TestTour(t *testing.T) {
 			if stop.name == "round" && tab.Count(`form[action$="/open"] button`) > 0 {
 				tab.Press(`form[action$="/open"] button`)
 			}
-			keep(t, tab.Shot("tour-"+stop.name), stop.name)
+			if shot := tab.Shot("tour-" + stop.name); stop.readme {
+				keep(t, shot, stop.name)
+			}
 			tab.Shots("tour-" + stop.name)
 			tab.AxeBoth()
-			if stop.paper {
+			if stop.name == "certificate" {
 				if leaves := tab.PDF("tour-" + stop.name); leaves != 1 {
 					t.Errorf("%d leaves, want one", leaves)
 				}
