@@ -163,7 +163,7 @@ func roundFrame(c *page.Context, s *store.RoundSheet, read string) page.Sheet {
 		Sub:     c.Say(words.RoundAndBatch.With(words.Raw(roundWords(c, &s.Batch, s.Plan)), words.Raw(batchWords(c, &s.Batch)))),
 		Back:    &page.Link{Text: c.Say(words.NavToday), URL: page.TodayURL},
 		Scripts: []string{"round.js"},
-		Acts: []page.Act{{Text: c.Say(words.RemarkTitle), URL: page.Under(url, "remark")},
+		Acts: []page.Act{{Text: c.Say(words.RemarkAct), URL: page.Under(url, "remark")},
 			{Text: c.Say(words.DaySheet), URL: page.Under(url, "sheet")}},
 	}
 	switch s.State {
@@ -184,7 +184,7 @@ func roundFrame(c *page.Context, s *store.RoundSheet, read string) page.Sheet {
 		{Label: label, Body: a.where},
 		page.TextCell(c.Say(words.Due), c.Say(words.DueWithin.With(c.Time(s.Due), c.Span(tolerance(s))))),
 		{Label: c.Say(words.ReadCell), Body: counted("n-read", read)},
-		{Label: c.Say(words.SecondLooks), Body: counted("n-look", c.Count(looksOf(s)))},
+		{Label: c.Say(words.LooksCell), Body: counted("n-look", c.Count(looksOf(s)))},
 	}
 	return sheet
 }

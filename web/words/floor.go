@@ -53,6 +53,7 @@ var (
 	Due              = say("Due", "À faire", "Fällig")
 	DueWithin        = say2("{time} ± {tolerance}", "{time} ± {tolerance}", "{time} ± {tolerance}")
 	ReadCell         = say("Read", "Relevés", "Abgelesen")
+	LooksCell        = say("Second looks", "Contre-lectures", "Kontrollen")
 	SecondLooks      = say("Second looks", "Contre-lectures", "Kontrollablesungen")
 	CountOf          = say2("{read} of {all}", "{read} sur {all}", "{read} von {all}")
 
@@ -175,6 +176,7 @@ var (
 var (
 	PieceTitle     = say("Movement", "Mouvement", "Werk")
 	PieceWhere     = say3("{round}, {holder}, place {n}", "{round}, {holder}, emplacement {n}", "{round}, {holder}, Platz {n}")
+	RemarkAct      = say("Add a remark", "Observation", "Bemerkung") // short: it stands in the title of a round
 	RemarkTitle    = say("Add a remark", "Ajouter une observation", "Bemerkung hinzufügen")
 	RemarkLabel    = say("What was seen or done", "Ce qui a été vu ou fait", "Was gesehen oder getan wurde")
 	RemarkHint     = say("It stays on the movement; an open remark holds its release until the QA lead has decided.", "Elle reste attachée au mouvement ; une observation ouverte retient la libération jusqu’à la décision de la qualité.", "Sie bleibt beim Werk; eine offene Bemerkung hält die Freigabe zurück, bis die QS entschieden hat.")
