@@ -61,9 +61,9 @@ func certificatePage(c *page.Context, v certificateView) templ.Component {
 				return templ_7745c5c3_Err
 			}
 			var templ_7745c5c3_Var4 string
-			templ_7745c5c3_Var4, templ_7745c5c3_Err = templ.JoinStringErrs(c.Say(words.BackTo.With(words.BatchTitle.With(v.sheet.Batch))))
+			templ_7745c5c3_Var4, templ_7745c5c3_Err = templ.JoinStringErrs(c.Say(words.PapersTitle) + " " + v.sheet.Batch)
 			if templ_7745c5c3_Err != nil {
-				return templ.Error{Err: templ_7745c5c3_Err, FileName: `certificate.templ`, Line: 11, Col: 132}
+				return templ.Error{Err: templ_7745c5c3_Err, FileName: `certificate.templ`, Line: 11, Col: 116}
 			}
 			_, templ_7745c5c3_Err = templ_7745c5c3_Buffer.WriteString(templ.EscapeString(templ_7745c5c3_Var4))
 			if templ_7745c5c3_Err != nil {

@@ -162,7 +162,7 @@ func (s *sheet) seen(r proof.Reading) string {
 // read says how and by whom the readings were taken, in a sentence each.
 func (s *sheet) read() []string {
 	if len(s.Record.Readings) == 0 {
-		return []string{s.say(words.PaperNoNotes)}
+		return []string{s.say(words.PaperNoReading)}
 	}
 	how := s.grouped(func(r proof.Reading) string {
 		method := words.ReadingMethod(r.Method)

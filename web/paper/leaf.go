@@ -85,7 +85,7 @@ func open(c store.Certificate, lang string, level string) sheet {
 	s.Cells = s.cells()
 	s.criteria()
 	s.Days = s.days()
-	s.Chart = s.picture()
+	s.Chart = s.picture(0)
 	s.Notes = s.notes()
 	s.Terms = s.terms()
 	s.proof()

@@ -26,17 +26,22 @@ type (
 
 // The sheet between its margins is 182 mm wide, the first column of the table 19 mm (paper.css).
 const (
-	pictureWidth, pictureHeight = 1820.0, 262.0
-	pictureLeft                 = 190.0
-	pictureTop, pictureFoot     = 14.0, 248.0
-	bracketX                    = 12.0
+	pictureWidth = 1820.0
+	pictureLeft  = 190.0
+	pictureEdge  = 14.0 // above and below the axis
+	bracketX     = 12.0
+
+	pictureLeast = 26.2 // mm
+	pictureGrows = 16.0 // mm, where the leaf has room
 )
 
-func (s *sheet) picture() (v picture) {
-	v.Box = fmt.Sprintf("0 0 %.0f %.0f", pictureWidth, pictureHeight)
+// picture draws the chart so many mm higher than it must be.
+func (s *sheet) picture(more float64) (v picture) {
+	height := 10 * (pictureLeast + more)
+	v.Box = fmt.Sprintf("0 0 %.0f %.0f", pictureWidth, height)
 	mean := s.meanRate()
 	lo, hi := s.reach(mean)
-	y := chart.NewScale(lo, hi, pictureFoot, pictureTop)
+	y := chart.NewScale(lo, hi, height-pictureEdge, pictureEdge)
 	skip := 0.0
 	if s.Days.Start {
 		skip = 1
@@ -51,7 +56,7 @@ func (s *sheet) picture() (v picture) {
 		v.Ticks = append(v.Ticks, text{Class: class, D: fmt.Sprintf("M%.0f %.1fH%.0f", pictureLeft, y.At(t.At), pictureWidth),
 			X: fmt.Sprintf("%.0f", pictureLeft-12), Y: fmt.Sprintf("%.1f", y.At(t.At)+8), Text: s.p.Signed(t.Dec, places(t.Dec))})
 	}
-	v.course(s.Record.Days, x, y, step)
+	v.course(s.Record.Days, x, y, step, height)
 	if mean != nil {
 		v.bracket(s, *mean, x, y, step)
 	}
@@ -90,11 +95,11 @@ func (s *sheet) reach(mean *proof.Criterion) (lo, hi float64) {
 
 // course joins the rates: solid within a position and temperature, dotted across a turn, hollow where a
 // day enters no criterion.
-func (v *picture) course(days []proof.Day, x func(int) float64, y chart.Scale, step float64) {
+func (v *picture) course(days []proof.Day, x func(int) float64, y chart.Scale, step, height float64) {
 	for i, d := range days {
 		turned := i > 0 && (d.Position != days[i-1].Position || d.TemperatureC != days[i-1].TemperatureC)
 		if turned {
-			v.Lines = append(v.Lines, line{"turn", fmt.Sprintf("M%.1f 0V%.0f", x(i)-step/2, pictureHeight)})
+			v.Lines = append(v.Lines, line{"turn", fmt.Sprintf("M%.1f 0V%.0f", x(i)-step/2, height)})
 		}
 		if d.Rate == "" {
 			continue

@@ -152,9 +152,9 @@ func (v *releaseView) row(c *page.Context, m store.Releasable, chosen []string) 
 
 func (v releaseView) frame(c *page.Context) page.Sheet {
 	b := v.list.Batch
-	s := page.Sheet{Title: c.Say(words.ReleaseTitle), Code: b.Code, Sub: described(c, b), Nav: page.BatchesURL, Styles: styles, Scripts: []string{"release.js"},
+	s := page.Sheet{Title: c.Say(words.ReleaseOf), Code: b.Code, Sub: described(c, b), Nav: page.BatchesURL, Styles: styles, Scripts: []string{"release.js"},
 		Back: &page.Link{Text: c.Say(words.BatchTitle.With(b.Code)), URL: page.BatchURL(b.Code)},
-		Cells: []page.Cell{page.TextCell(c.Say(words.NavCertificates), c.Count(v.counts.certificates)), page.TextCell(c.Say(words.ReleaseReps), c.Count(v.counts.reports)),
+		Cells: []page.Cell{page.TextCell(c.Say(words.ReleaseReadyC), c.Count(v.counts.certificates)), page.TextCell(c.Say(words.ReleaseReadyR), c.Count(v.counts.reports)),
 			page.TextCell(c.Say(words.ReleaseHeld), c.Count(v.counts.held)), page.TextCell(c.Say(words.ReleasedAlready), c.Count(v.counts.released))}}
 	if v.counts.released > 0 {
 		s.Acts = append(s.Acts, page.Act{Text: c.Say(words.NavCertificates), URL: papersURL(b.Code)})

@@ -16,9 +16,9 @@ import (
 const (
 	leafHeight = 297 - 11 - 8.0
 	leafWidth  = 182.0
-	gap        = 2.6  // between blocks
-	heading    = 5.2  // a section's heading with its rule
-	footHeight = 6.0  // the number at the foot
+	gap        = 2.1  // between blocks
+	heading    = 5.0  // a section's heading with its rule
+	footHeight = 5.0  // the number at the foot
 	half       = 87.5 // one of two columns
 	small      = 7.0  // points
 	perPoint   = 25.4 / 72
@@ -32,6 +32,7 @@ func (s *sheet) leaves() int {
 	switch {
 	case s.notesHeight(s.Notes)+terms <= room:
 		s.Here = s.Notes
+		s.Chart = s.picture(min(room-terms-s.notesHeight(s.Notes), pictureGrows))
 		return 1
 	case terms > room-pointer:
 		s.Moved = true
@@ -80,7 +81,7 @@ func (s *sheet) above() float64 {
 	if s.Days.States {
 		rows++
 	}
-	days := heading + 3.9 + 4.1*rows + 5.9 + pictureHeight/10 + 0.8 + block(s.positions()+" "+s.Days.Note, 6.8, leafWidth, 1.4)
+	days := heading + 3.9 + 4.1*rows + 5.9 + pictureLeast + 0.8 + block(s.positions()+" "+s.Days.Note, 6.8, leafWidth, 1.4)
 	return s.head() + gap + table + gap + days
 }
 
@@ -98,17 +99,16 @@ func (s *sheet) head() float64 {
 			h += block(m, 9.2, leafWidth-10, 1.3)
 		}
 	}
-	h += gap + max(9, block(s.Word+" "+strings.Join(s.Says, " "), 8.4, leafWidth-28, 1.35)+1) + 4
+	h += gap + max(8.4, block(s.Word+"    "+strings.Join(s.Says, " "), 8.6, leafWidth-28, 1.35)+1) + 4
 	h += gap
-	widths := []float64{56, 26, 41, 41}
-	for row := 0; row < len(s.Cells); row += len(widths) {
+	for row, widths := range [][]float64{{56, 26, 41, 41}, {56, 41, 26, 41}} {
 		most := 0.0
-		for i, c := range s.Cells[row:min(row+len(widths), len(s.Cells))] {
-			size := 8.0
+		for i, width := range widths {
+			c, size := s.Cells[4*row+i], 8.0
 			if c.Mono {
 				size = 8.6
 			}
-			most = max(most, block(c.Text, size, widths[i], 1.27))
+			most = max(most, block(c.Text, size, width, 1.27))
 		}
 		h += most + 2.9 + 1.6
 	}
@@ -162,7 +162,7 @@ func (s *sheet) below() float64 {
 	for i, c := range append(list, s.say(words.PaperJudgedBy.With(s.Engine))) {
 		heights[i] = block(c, 6.5, 69, 1.3)
 	}
-	return gap + max(27, max(said, signed)+1.6+columns(heights)) + 2.6 + footHeight
+	return gap + max(27, max(said, signed)+1.6+columns(heights)) + 2 + footHeight
 }
 
 // block is the height in mm of text set in so many points within so many mm.

@@ -10,7 +10,7 @@ import (
 
 // terms are the statements of the paper: by what it was judged, and what is not stated.
 func (s *sheet) terms() []term {
-	return []term{
+	list := []term{
 		s.programme(),
 		{Label: s.say(words.PaperMeasurand), Lines: []string{s.say(measurand(s.Programme.Measurand))}},
 		{Label: s.say(words.PaperDecision), Lines: []string{s.decision()}},
@@ -19,6 +19,10 @@ func (s *sheet) terms() []term {
 		{Label: s.say(words.PaperConditions), Lines: s.conditions()},
 		{Label: s.say(words.PaperReadings), Lines: s.read()},
 	}
+	if len(s.Notes) == 0 {
+		list = append(list, term{Label: s.say(words.ReleaseRemarks), Lines: []string{s.say(words.PaperNoNotes)}})
+	}
+	return list
 }
 
 // numbered finds the number of a standard in a title.
