@@ -29,6 +29,7 @@ var _ = []struct{}{
 	fault("password_long", "A password has at most {most} characters.", "Un mot de passe a {most} caractères au plus.", "Ein Passwort hat höchstens {most} Zeichen."),
 	fault("ends_before_now", "The end must lie in the future.", "La fin doit être dans le futur.", "Das Ende muss in der Zukunft liegen."),
 	fault("diameter_or_area", "Give either the diameter or the area.", "Indiquez soit le diamètre, soit la surface.", "Geben Sie entweder den Durchmesser oder die Fläche an."),
+	fault("no_holder", "There is no holder {code} here. Its number stands on it.", "Il n’y a pas de porte-mouvements {code} ici. Son numéro y est inscrit.", "Einen Werkhalter {code} gibt es hier nicht. Seine Nummer steht auf ihm."),
 	fault("no_such_place", "The holder has no place {place}.", "Le porte-mouvements n’a pas d’emplacement {place}.", "Der Werkhalter hat keinen Platz {place}."),
 
 	// Registering a batch.
