@@ -68,6 +68,9 @@ func Open(ctx context.Context, c Config) (*Lab, error) {
 	pc.ConnConfig.RuntimeParams["search_path"] = "rh"
 	pc.ConnConfig.RuntimeParams["timezone"] = "UTC"
 	pc.ConnConfig.RuntimeParams["application_name"] = "ratehouse"
+	// A connection is asked whether it lives after half a minute of rest, not after a second: each
+	// question is a round trip before a save.
+	pc.ShouldPing = func(_ context.Context, p pgxpool.ShouldPingParams) bool { return p.IdleDuration > 30*time.Second }
 	if c.Conns > 0 {
 		pc.MaxConns = c.Conns
 	}
