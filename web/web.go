@@ -83,7 +83,7 @@ func newServer(c Config) (*server, error) {
 	s.foreign.AddInsecureBypassPattern(apiPrefix)
 	s.foreign.SetDenyHandler(http.HandlerFunc(page.ShowForeign))
 	s.routes = s.table()
-	s.api = api.New(api.Config{Lab: c.Lab, Logger: c.Logger, Limit: c.BodyLimit})
+	s.api = api.New(api.Config{Lab: c.Lab, Logger: c.Logger})
 	s.nav = s.navigation()
 	return s, nil
 }

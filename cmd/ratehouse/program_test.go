@@ -75,6 +75,8 @@ type ran struct {
 func runs(t testing.TB, stdin string, env []string, args ...string) ran {
 	t.Helper()
 	cmd := process(env, args...)
+	giveUp := time.AfterFunc(time.Minute, func() { cmd.Process.Kill() }) // one that should have been refused runs on
+	defer giveUp.Stop()
 	var out, errs bytes.Buffer
 	cmd.Stdin, cmd.Stdout, cmd.Stderr = strings.NewReader(stdin), &out, &errs
 	err := cmd.Run()

@@ -25,14 +25,15 @@ const DocumentPath = Prefix + "/openapi.json"
 type Config struct {
 	Lab    *store.Lab
 	Logger *slog.Logger
-	Limit  int64 // bytes of a request's body
 }
+
+// mostBytes is how long the body of a call may be.
+const mostBytes = 1 << 20
 
 // API holds the routes and the document that describes them.
 type API struct {
 	lab      *store.Lab
 	log      *slog.Logger
-	limit    int64
 	huma     huma.API
 	routes   []Route
 	document []byte
@@ -49,7 +50,7 @@ type Route struct {
 
 // New builds the API.
 func New(c Config) *API {
-	a := &API{lab: c.Lab, log: c.Logger, limit: c.Limit}
+	a := &API{lab: c.Lab, log: c.Logger}
 	config := huma.DefaultConfig("Ratehouse", "1.0.0")
 	config.Info.Description = "Readings in, verdicts and certificates out. Numbers are decimal strings, exact to 0.001; instants are RFC 3339. " +
 		"Every answer that is not a success is a problem (RFC 9457) with a code from a closed list."

@@ -71,7 +71,7 @@ func (a *API) identify(r *http.Request) (store.Actor, *Problem) {
 // bounded reads the body of a request before anything else: JSON of at most the limit.
 func (a *API) bounded(next http.Handler) http.Handler {
 	return http.HandlerFunc(func(w http.ResponseWriter, r *http.Request) {
-		body, p := a.read(r)
+		body, p := readBody(r)
 		if p != nil {
 			a.show(w, r, p)
 			return
@@ -81,7 +81,7 @@ func (a *API) bounded(next http.Handler) http.Handler {
 	})
 }
 
-func (a *API) read(r *http.Request) ([]byte, *Problem) {
+func readBody(r *http.Request) ([]byte, *Problem) {
 	kind, args, err := mime.ParseMediaType(r.Header.Get("Content-Type"))
 	if err != nil || kind != "application/json" || args["charset"] != "" && !strings.EqualFold(args["charset"], "utf-8") {
 		return nil, problem(http.StatusUnsupportedMediaType, "media_type", "type", printable(r.Header.Get("Content-Type")))
@@ -89,9 +89,9 @@ func (a *API) read(r *http.Request) ([]byte, *Problem) {
 	if e := r.Header.Get("Content-Encoding"); e != "" && !strings.EqualFold(e, "identity") {
 		return nil, problem(http.StatusUnsupportedMediaType, "media_type", "type", printable(e))
 	}
-	body, err := io.ReadAll(io.LimitReader(r.Body, a.limit+1))
-	if _, over := errors.AsType[*http.MaxBytesError](err); over || int64(len(body)) > a.limit {
-		return nil, problem(http.StatusRequestEntityTooLarge, "body_too_large", "most", fmt.Sprint(a.limit))
+	body, err := io.ReadAll(io.LimitReader(r.Body, mostBytes+1))
+	if _, over := errors.AsType[*http.MaxBytesError](err); over || len(body) > mostBytes {
+		return nil, problem(http.StatusRequestEntityTooLarge, "body_too_large", "most", fmt.Sprint(mostBytes))
 	}
 	if err != nil {
 		return nil, problem(http.StatusBadRequest, "body_cut_off")

@@ -33,7 +33,7 @@ type house struct {
 func newHouse(t testing.TB) *house {
 	t.Helper()
 	h := &house{House: storetest.New(t), tokens: map[store.Scope]string{}}
-	handler, err := web.New(web.Config{Lab: h.Lab})
+	handler, err := web.New(web.Config{Lab: h.Lab, BodyLimit: 4 << 20}) // the API's own limit is 1 MiB
 	if err != nil {
 		t.Fatal(err)
 	}
