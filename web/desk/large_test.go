@@ -11,9 +11,6 @@ import (
 	"sync/atomic"
 	"testing"
 
-	"github.com/jackc/pgx/v5"
-	"github.com/jackc/pgx/v5/pgtype"
-
 	"ratehouse/store"
 	"ratehouse/store/storetest"
 	"ratehouse/web/desk"
@@ -71,12 +68,10 @@ func (c *listening) count(letter byte) {
 // counted opens the laboratory again through a connection that counts.
 func counted(t testing.TB, h *storetest.House) (*store.Lab, *asked) {
 	t.Helper()
-	config, err := pgx.ParseConfig(h.DB.App)
-	must(t, err)
-	dial, n := config.DialFunc, &asked{}
+	n := &asked{}
 	lab, err := store.Open(t.Context(), store.Config{DSN: h.DB.App, Clock: h.Clock.Now, Engine: "test", Conns: 1,
 		Dial: func(ctx context.Context, network, addr string) (net.Conn, error) {
-			c, err := dial(ctx, network, addr)
+			c, err := new(net.Dialer).DialContext(ctx, network, addr)
 			return &listening{Conn: c, asked: n}, err
 		}})
 	must(t, err)
@@ -162,14 +157,14 @@ func BenchmarkBatchPage(b *testing.B) {
 	lot(b, h, "26-015", 5000, 15, 2)
 	lab, _ := counted(b, h)
 	pages := desk.New(lab)
-	conn, err := pgx.Connect(b.Context(), h.DB.App)
-	must(b, err)
-	b.Cleanup(func() { conn.Close(context.WithoutCancel(b.Context())) })
+	series := h.Fetcher(b)
 	for _, code := range []string{"26-009", "26-015"} {
 		var fetch float64
 		b.Run(code+"/series", func(b *testing.B) {
 			for b.Loop() {
-				fetchSeries(b, conn, code)
+				if n := series(code); n != 5000 {
+					b.Fatalf("%d series", n)
+				}
 			}
 			fetch = float64(b.Elapsed().Nanoseconds()) / float64(b.N)
 		})
@@ -186,23 +181,5 @@ func BenchmarkBatchPage(b *testing.B) {
 			}
 			b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/fetch, "x_series")
 		})
-	}
-}
-
-// fetchSeries reads the series of a batch and nothing else.
-func fetchSeries(b *testing.B, conn *pgx.Conn, code string) {
-	rows, err := conn.Query(b.Context(), `SELECT s.no, s.rate, s.found, s.as_left, s.at_s, s.code, s.ended FROM rh.series s
-		WHERE s.batch = (SELECT id FROM rh.batch WHERE code = $1) ORDER BY s.no`, code)
-	must(b, err)
-	type series struct {
-		No                      int16
-		Rate, Found, AsLeft, At []pgtype.Int4
-		Code                    []pgtype.Int2
-		Ended                   int16
-	}
-	all, err := pgx.CollectRows(rows, pgx.RowToStructByPos[series])
-	must(b, err)
-	if len(all) != 5000 {
-		b.Fatalf("%d series", len(all))
 	}
 }
