@@ -6,7 +6,7 @@ import (
 	"fmt"
 	"math/rand/v2"
 	"net"
-	"strings"
+	"slices"
 	"sync/atomic"
 	"testing"
 	"time"
@@ -100,28 +100,31 @@ func TestSummaryRebuiltIsIncremental(t *testing.T) {
 	}
 }
 
-// The summary says what the judge says, movement by movement.
+// The summary says what the judge says, movement by movement; by criterion it counts those that fail by
+// their rates or were removed, and none that was rejected for another cause or left the yield.
 func TestSummaryCountsVerdicts(t *testing.T) {
 	t.Parallel()
 	h := storetest.New(t)
-	h.Batch(t, "26-001", 4)
-	good := strings.Split(strings.Repeat("1.0 ", 15), " ")[:15]
-	fast := strings.Split(strings.Repeat("7.5 ", 15), " ")[:15]
-	short := append(append([]string{}, good[:9]...), "", "", "", "", "", "")
-	h.Run(t, "26-001", [][]string{good, fast, short, good})
-	if err := h.EndMovement(t.Context(), h.Lead, "26-001", storetest.Serial(4), store.Withdrawn, "asked back", ""); err != nil {
-		t.Fatal(err)
+	h.Batch(t, "26-001", 7)
+	good := slices.Repeat([]string{"1.0"}, 15)
+	fast := slices.Repeat([]string{"7.5"}, 15)
+	short := append(slices.Repeat([]string{"1.0"}, 9), slices.Repeat([]string{""}, 6)...)
+	h.Run(t, "26-001", [][]string{good, fast, short, fast, fast, fast, fast})
+	for i, end := range []store.End{store.Withdrawn, store.Rejected, store.Removed, store.Void} {
+		if err := h.EndMovement(t.Context(), h.Lead, "26-001", storetest.Serial(4+i), end, "as it came", ""); err != nil {
+			t.Fatal(err)
+		}
 	}
 	list, err := h.Batches(t.Context(), h.Lead, store.BatchFilter{}, "")
 	if err != nil {
 		t.Fatal(err)
 	}
 	line := list.Lines[0]
-	want := store.Counts{Pass: 1, Fail: 1, Open: 1, Withdrawn: 1}
+	want := store.Counts{Pass: 1, Fail: 1, Open: 1, Withdrawn: 1, Rejected: 1, Removed: 1, VoidEnds: 1}
 	if line.Summary.First != want {
 		t.Errorf("counts = %+v, want %+v", line.Summary.First, want)
 	}
-	if line.Summary.First.Judged() != 2 || line.State != store.BatchDone || line.Due != -1 {
+	if line.Summary.First.Judged() != 4 || line.State != store.BatchDone || line.Due != -1 {
 		t.Errorf("judged %d, state %s, due %d", line.Summary.First.Judged(), line.State, line.Due)
 	}
 	var failed trial.Result
@@ -129,18 +132,15 @@ func TestSummaryCountsVerdicts(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	rates := make([]trial.Rate, 15)
-	for i := range rates {
-		rates[i] = trial.RateOf(7500)
-	}
+	rates := slices.Repeat([]trial.Rate{trial.RateOf(7500)}, 15)
 	j.Rates(rates, &failed)
 	for i := range failed.Values {
 		n := 0
 		if failed.Values[i].Outcome == trial.Outside {
-			n = 1
+			n = 2 // by its rates, and removed
 		}
-		if line.Summary.Failed[i] != n {
-			t.Errorf("criterion %d failed %d times, the judge says %d", i, line.Summary.Failed[i], n)
+		if line.Summary.Failed[i] != n || line.Summary.Alone[i] != n {
+			t.Errorf("criterion %d failed %d times, alone %d, want %d", i, line.Summary.Failed[i], line.Summary.Alone[i], n)
 		}
 	}
 	asTechnician, err := h.Batches(t.Context(), h.Technician, store.BatchFilter{}, "")

@@ -223,6 +223,15 @@ func (v batchView) rounds() (links []roundLink) {
 	return links
 }
 
+// asksRisk tells whether some movement can still change its fate.
+func (v batchView) asksRisk() bool { return v.due >= 0 || v.cannot > 0 }
+
+// hasLeft tells whether anything stands beside the remarks: a large finished batch has neither
+// movements at risk nor holders drawn.
+func (v batchView) hasLeft() bool {
+	return v.asksRisk() || len(v.pieces) <= mostOnMap && slices.ContainsFunc(v.pieces, func(p piece) bool { return p.Holder != "" })
+}
+
 // yieldView is what is known of the batch as a whole.
 type yieldView struct {
 	Share, Of string // "" while nothing is judged

@@ -111,6 +111,29 @@ func TestPageAgreesWithTheJudge(t *testing.T) {
 			compareCells(t, p, want, serial, row)
 		}
 		compareTally(t, page, count)
+		comparePareto(t, page, want.sheet)
+	}
+}
+
+// comparePareto holds the bars of the page against the summary that the list of batches keeps.
+func comparePareto(t *testing.T, page doc, sheet store.BatchSheet) {
+	t.Helper()
+	sum, err := sheet.Summarise()
+	must(t, err)
+	for i, k := range sheet.Batch.Programme.Criteria {
+		found := false
+		for _, bar := range page.all("svg g[role=img]") {
+			says, _ := bar.attr("aria-label")
+			if strings.HasPrefix(says, k.Symbol+" ") && strings.Contains(says, "movement") {
+				found = true
+				if want := fmt.Sprintf(": %d movement", sum.Failed[i]); !strings.Contains(says, want) {
+					t.Errorf("%s: the page says %q, the summary %d", sheet.Batch.Code, says, sum.Failed[i])
+				}
+			}
+		}
+		if !found {
+			t.Errorf("%s: no bar for %s", sheet.Batch.Code, k.Symbol)
+		}
 	}
 }
 

@@ -76,7 +76,7 @@ var (
 	CannotLead         = say("no rates to come can satisfy all criteria together", "aucune marche à venir ne satisfait tous les critères ensemble", "keine künftigen Gänge erfüllen alle Kriterien zusammen")
 	RiskNone           = say("Every open movement can still pass, and none is at risk.", "Chaque mouvement en cours peut encore réussir, et aucun n’est menacé.", "Jedes offene Werk kann noch bestehen, und keines ist gefährdet.")
 	AtRisk             = say("at risk", "menacé", "gefährdet")
-	Standing           = say("Standing", "Situation", "Lage der Dinge").unsure(DE)
+	Standing           = say("Standing", "Situation", "Status")
 	MeanSoFarShort     = say("so far", "jusqu’ici", "bisher")
 	MeanSoFarHead      = say("Mean so far, s/d", "Moyenne jusqu’ici, s/d", "Mittel bisher, s/d")
 	OutOfReachHead     = say("Out of reach", "Hors d’atteinte", "Nicht mehr erreichbar")
