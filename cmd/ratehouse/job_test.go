@@ -32,7 +32,7 @@ func TestWholeJobByKeyboard(t *testing.T) {
 	h := storetest.New(t)
 	base := webtest.Serve(t, h.Lab)
 	tab := webtest.Start(t, base)
-	register(tab, "26-500", "rate")
+	register(tab, "26-500", "rate", len(jobRates))
 	for k := 1; k <= 15; k++ {
 		round(h, tab, "26-500", k, func() {
 			for i := range jobRates {
@@ -68,11 +68,12 @@ func TestWholeJobByTouch(t *testing.T) {
 	base := webtest.Serve(t, h.Lab)
 	tab := webtest.Start(t, base)
 	tab.Resize(webtest.Tablet)
-	register(tab, "26-501", "state")
-	states := make([]float64, len(jobRates)) // for typing only: what is judged is what was typed
+	const pieces = 2 // one passes, one fails: a touch costs the browser a tenth of a second
+	register(tab, "26-501", "state", pieces)
+	states := make([]float64, pieces) // for typing only: what is judged is what was typed
 	for k := 0; k <= 15; k++ {
 		round(h, tab, "26-501", k, func() {
-			for i := range jobRates {
+			for i := range pieces {
 				if k > 0 {
 					var r float64
 					fmt.Sscan(jobRates[i][k-1], &r)
@@ -88,18 +89,18 @@ func TestWholeJobByTouch(t *testing.T) {
 	lead.Go("/batches/26-501")
 	lead.Shots("job-touch-batch")
 	rows := strings.Split(strings.TrimSpace(download(t, lead, base+"/batches/26-501/sheets.csv")), "\n")
-	for i, verdict := range jobWant {
+	for i, verdict := range jobWant[:pieces] {
 		if cells := strings.Split(rows[i+1], ","); cells[0] != jobSerial(i) || cells[2] != verdict {
 			t.Errorf("%s: %s, want %s", cells[0], cells[2], verdict)
 		}
 	}
-	release(t, lead, "26-501", 5)
+	release(t, lead, "26-501", pieces)
 }
 
 func jobSerial(i int) string { return fmt.Sprintf("KW-%03d", 7*i+11) }
 
 // register fills in the form of a new batch, due now.
-func register(tab *webtest.Tab, code, entry string) {
+func register(tab *webtest.Tab, code, entry string, pieces int) {
 	tab.SignIn("technician", storetest.Password)
 	tab.Go("/batches/new")
 	tab.Fill(`[name=code]`, code)
@@ -111,7 +112,7 @@ func register(tab *webtest.Tab, code, entry string) {
 		tab.Click(`[name=over_24h]`)
 	}
 	var list []string
-	for i := range jobRates {
+	for i := range pieces {
 		list = append(list, jobSerial(i))
 	}
 	webtest.Eval[bool](tab, fmt.Sprintf(`(document.querySelector("[name=serials]").value = %q) !== ""`, strings.Join(list, "\n")))
