@@ -566,3 +566,52 @@ func TestReadAheadIsHeld(t *testing.T) {
 		t.Errorf("a minute later held as %q", got)
 	}
 }
+
+// A correction and a release of the same movement at the same time: either the paper holds the
+// corrected value, or the correction is refused. It is never accepted behind the paper's back.
+func TestCorrectionMeetsRelease(t *testing.T) {
+	t.Parallel()
+	h := storetest.New(t)
+	const n = 40
+	rates := make([][]string, n)
+	for i := range rates {
+		rates[i] = passing
+	}
+	finished(t, h, "B1", rates...)
+	accepted := make([]bool, n)
+	var wg sync.WaitGroup
+	for i := range n {
+		start := make(chan struct{})
+		wg.Go(func() {
+			<-start
+			e := h.Rate("B1", i+1, 5, "2.8")
+			e.Base, e.Reason = 1, "slip"
+			answers, err := h.Save(t.Context(), h.Second, time.Time{}, []store.Entry{e})
+			if err != nil {
+				t.Error(err)
+				return
+			}
+			accepted[i] = answers[0].Status == store.Accepted
+			if !accepted[i] && answers[0].Code != "released" {
+				t.Errorf("the correction was refused as %q", answers[0].Code)
+			}
+		})
+		wg.Go(func() {
+			<-start
+			if _, err := h.Release(t.Context(), h.Lead, "B1", []string{storetest.Serial(i + 1)}); err != nil {
+				t.Error(err)
+			}
+		})
+		close(start)
+	}
+	wg.Wait()
+	papers, err := h.Certificates(t.Context(), h.Lead, "B1", 0, n)
+	if err != nil || len(papers) != n {
+		t.Fatalf("%d papers, %v", len(papers), err)
+	}
+	for i, c := range papers {
+		if got := c.Record.Days[4].Rate; accepted[i] != (got == "2.8") {
+			t.Errorf("%s: the correction was accepted: %v, the paper prints %s", c.Record.Movement.Serial, accepted[i], got)
+		}
+	}
+}

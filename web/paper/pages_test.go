@@ -162,7 +162,7 @@ func TestCertificatePage(t *testing.T) {
 	text := strings.ReplaceAll(tab.Text(".paper"), "\u00a0", " ")
 	wants := []string{"Rate certificate", "Pass.", "met all 7 criteria of category 1", "S-0001", "KESTWICK", "SHA-256", "after published descriptions", "as performed",
 		"Simple acceptance", "Not stated: the laboratory has stated no uncertainty budget", "Released", "Nadja Quill", "Ilse Marden", "leaf 1 of 1; end",
-		"−4.0 … +6.0", "papers.example/verify", "protected in some countries", "Accreditation and local rules", paperOf(t, h, "B1-0001").Code, paperOf(t, h, "B1-0001").Record.Programme.Hash}
+		"−4.0 … +6.0", "08:00", "papers.example/verify", "protected in some countries", "Accreditation and local rules", paperOf(t, h, "B1-0001").Code, paperOf(t, h, "B1-0001").Record.Programme.Hash}
 	for _, r := range passing {
 		sign := "+" + r
 		if strings.HasPrefix(r, "-") {

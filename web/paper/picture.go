@@ -32,7 +32,7 @@ const (
 	bracketX     = 12.0
 
 	pictureLeast = 26.2 // mm
-	pictureGrows = 16.0 // mm, where the leaf has room
+	pictureGrows = 22.0 // mm, where the leaf has room
 )
 
 // picture draws the chart so many mm higher than it must be.
