@@ -7,6 +7,7 @@ import (
 	"fmt"
 	"io"
 	"math/rand/v2"
+	"strconv"
 	"strings"
 	"testing"
 	"testing/iotest"
@@ -168,6 +169,17 @@ func TestSeenIsExact(t *testing.T) {
 		}
 		if want[serial] == 0 {
 			want[serial] = line
+		}
+	}
+}
+
+// Among 400,000 serials some twenty pairs share their 32-bit hash; none may pass for another.
+func TestSeenComparesSerialsNotHashes(t *testing.T) {
+	t.Parallel()
+	s := newSeen()
+	for k := range 400_000 {
+		if line := s.first(strconv.AppendInt(nil, int64(k), 10), k+1); line != 0 {
+			t.Fatalf("serial %d is taken for the one on line %d", k, line)
 		}
 	}
 }
