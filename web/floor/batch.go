@@ -41,7 +41,7 @@ type typeOption struct {
 // preview says what registering would make of the list.
 type preview struct {
 	pieces, holders string // counts in words; "" while there is no list
-	span, ends      string
+	span            string
 	faults          []string
 	more            string
 	good            bool

@@ -19,7 +19,6 @@ type pieceView struct {
 	remarkURL  string
 	endURL     string
 	ended      string // how it left, "" while it is in trial
-	mayGoBack  bool   // take the end back
 	remarkHint string
 }
 

@@ -58,13 +58,12 @@ type term struct {
 }
 
 type criterion struct {
-	Symbol, Title, Unit    string
-	Value, Limits, Margin  string
-	Known, Out             bool
-	Judged                 part.Judged
-	Gauge                  part.Gauge
-	Accept                 string
-	printed, least, utmost string
+	Symbol, Title, Unit   string
+	Value, Limits, Margin string
+	Known, Out            bool
+	Judged                part.Judged
+	Gauge                 part.Gauge
+	Accept                string
 }
 
 // open makes the sheet of a paper in the language asked for, or in its own.
