@@ -356,6 +356,39 @@ func TestCannotPassSeesCriteriaTogether(t *testing.T) {
 	}
 }
 
+// One point is left for day 10, where the limits of M and D touch: known rates in sevenths, whose
+// binary forms never end, so that only exact arithmetic sees that it is there.
+func TestTheLastPointIsSeen(t *testing.T) {
+	t.Parallel()
+	j := newJudge(t, "1")
+	for k := int64(-300); k <= 300; k += 11 {
+		// 13, 13, six times 4, and 5 on day 9, bent so that the sums stay; or the six as -2, -2 and
+		// four times 7, only the negative ones bent, so that cutting them errs to the other side.
+		counts := []int64{11_375 + k, 11_375 - k, 3500 - k, 3500 + k, 3500 + 2*k, 3500 - 2*k, 3500, 3500, 4375 + k}
+		if k%2 == 0 {
+			counts = []int64{11_375, 11_375, -1750 - k, -1750 + k, 6125, 6125, 6125, 6125, 4375}
+		}
+		rates := make([]trial.Rate, 15)
+		for d, c := range counts {
+			rates[d] = sevenths(c)
+		}
+		if j.CannotPass(rates) {
+			t.Fatalf("bent by %d: day 10 can still be 10 - day 9, and it is said to be too late", k)
+		}
+		want := trial.Ratio(10, 1).Sub(rates[8].Exact())
+		if lo, hi, ok := j.Needed(rates, 10); !ok || lo.Cmp(want) != 0 || hi.Cmp(want) != 0 {
+			t.Fatalf("bent by %d: day 10 needed within %s to %s, want %s", k, lo, hi, want)
+		}
+		for d, gone := range map[int]bool{0: true, 2: true, 8: false} { // day 9 moves the point, no more
+			rates[d] = sevenths(counts[d] + 1)
+			if j.CannotPass(rates) != gone {
+				t.Fatalf("bent by %d, day %d a hair up: cannot pass %v", k, d+1, !gone)
+			}
+			rates[d] = sevenths(counts[d])
+		}
+	}
+}
+
 // unreachable against elimination of each criterion by itself in the box, and against corners and
 // breakpoints by brute force through the engine's own verdicts.
 func TestUnreachableAgainstElimination(t *testing.T) {

@@ -122,6 +122,9 @@ func TestOwnCorrection(t *testing.T) {
 		t.Errorf("the value of a place stands %d times on the page while another is open", n)
 	}
 	tab.Go("/batches/26-001/rounds/0") // as after a break: nothing left in the page's memory
+	if strings.Contains(webtest.Eval[string](tab, `document.documentElement.outerHTML`), "27.3") {
+		t.Error("the page comes with the value of a place")
+	}
 	tab.Click(`[data-place="1"]`)
 	tab.WaitText("#note", "You typed +27.3")
 	if !webtest.Eval[bool](tab, `document.querySelector("#reason").hidden`) {
@@ -314,6 +317,12 @@ func TestServerFails(t *testing.T) {
 	for i := range 4 {
 		wantReadings(t, h, i+1, fmt.Sprintf("0/1 %d", i+1))
 	}
+	tab.Click(`[data-place="2"]`) // saved when its answer was lost: the page knows it as its own
+	tab.WaitText("#note", "You typed +2.0")
+	if !webtest.Eval[bool](tab, `document.querySelector("#reason").hidden`) {
+		t.Error("a reading saved twice over is taken for somebody else's")
+	}
+	tab.Click(`[data-place="5"]`)
 	before := net.calls.Load()
 	tab.Keys("+5.0\r")
 	settled(tab)
