@@ -28,14 +28,17 @@ const seriesColumns = `s.batch, s.no, m.serial, s.rate, s.found, s.as_left, s.at
 	EXISTS (SELECT FROM certificate p WHERE p.batch = s.batch AND p.no = s.no AND NOT EXISTS (SELECT FROM revocation v WHERE v.number = p.number)) AS released`
 
 // LockSeries queues the look-up of movements by batch code and serial, locked in key order so that
-// two saves never wait for each other crosswise.
+// two saves never wait for each other crosswise. The rows are read by a statement of their own after
+// the lock is held: what else the locking one saw, such as papers, may be older than its wait.
 func LockSeries(b *pgx.Batch, into *[]Series, site int16, codes, serials []string) {
-	list(b, into, `SELECT `+seriesColumns+`
+	const named = `
 		FROM unnest($2::text[], $3::text[]) w(code, serial)
 		JOIN batch b ON b.site = $1 AND b.code = w.code
 		JOIN movement m ON m.batch = b.id AND m.serial = w.serial
 		JOIN series s ON s.batch = m.batch AND s.no = m.no
-		ORDER BY s.batch, s.no FOR UPDATE OF s`, site, codes, serials)
+		ORDER BY s.batch, s.no`
+	b.Queue(`SELECT 1`+named+` FOR UPDATE OF s`, site, codes, serials)
+	list(b, into, `SELECT `+seriesColumns+named, site, codes, serials)
 }
 
 // Reading is one entry of the evidence.
