@@ -62,41 +62,6 @@ func TestWholeJobByKeyboard(t *testing.T) {
 	release(t, lead, "26-500", 5)
 }
 
-func TestWholeJobByTouch(t *testing.T) {
-	t.Parallel()
-	h := storetest.New(t)
-	base := webtest.Serve(t, h.Lab)
-	tab := webtest.Start(t, base)
-	tab.Resize(webtest.Tablet)
-	const pieces = 2 // one passes, one fails: a touch costs the browser a tenth of a second
-	register(tab, "26-501", "state", pieces)
-	states := make([]float64, pieces) // for typing only: what is judged is what was typed
-	for k := 0; k <= 15; k++ {
-		round(h, tab, "26-501", k, func() {
-			for i := range pieces {
-				if k > 0 {
-					var r float64
-					fmt.Sscan(jobRates[i][k-1], &r)
-					states[i] += r
-				}
-				touch(tab, fmt.Sprintf("%+.1f", states[i]))
-			}
-		})
-	}
-	lead := webtest.Start(t, base)
-	lead.SignIn("lead", storetest.Password)
-	lead.Resize(webtest.Tablet)
-	lead.Go("/batches/26-501")
-	lead.Shots("job-touch-batch")
-	rows := strings.Split(strings.TrimSpace(download(t, lead, base+"/batches/26-501/sheets.csv")), "\n")
-	for i, verdict := range jobWant[:pieces] {
-		if cells := strings.Split(rows[i+1], ","); cells[0] != jobSerial(i) || cells[2] != verdict {
-			t.Errorf("%s: %s, want %s", cells[0], cells[2], verdict)
-		}
-	}
-	release(t, lead, "26-501", pieces)
-}
-
 func jobSerial(i int) string { return fmt.Sprintf("KW-%03d", 7*i+11) }
 
 // register fills in the form of a new batch, due now.
@@ -139,14 +104,6 @@ func typed(v string) string {
 		return v
 	}
 	return "+" + v
-}
-
-// touch taps a value on the page's own keys.
-func touch(tab *webtest.Tab, value string) {
-	for _, key := range value {
-		tab.Tap(fmt.Sprintf(`[data-key="%c"]`, key))
-	}
-	tab.Tap("#enter")
 }
 
 // judged is what `ratehouse judge` says of the rates, with the two columns of a batch's file.
