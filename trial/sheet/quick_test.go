@@ -11,8 +11,8 @@ import (
 	"ratehouse/trial"
 )
 
-// transcript reads a file of movements into text, quickly or cell by cell.
-func transcript(text string, states, careful bool) string {
+// log reads a file of movements into text, quickly or cell by cell.
+func log(text string, states, careful bool) string {
 	m, err := OpenMovements(strings.NewReader(text), trial.ISO3159(), states)
 	if err != nil {
 		return err.Error()
@@ -75,7 +75,7 @@ func TestQuickRowsReadLikeCarefulOnes(t *testing.T) {
 			}
 			text += strings.Join(cells, ",") + []string{"\n", "\r\n", "\n\n"}[rng.IntN(3)]
 		}
-		if quick, slow := transcript(text, states, false), transcript(text, states, true); quick != slow {
+		if quick, slow := log(text, states, false), log(text, states, true); quick != slow {
 			t.Fatalf("%q\nquickly\n%s\ncarefully\n%s", text, quick, slow)
 		}
 	}
@@ -93,7 +93,7 @@ func FuzzQuick(f *testing.F) {
 		if strings.Contains(body, ";") {
 			header = strings.ReplaceAll(header, ",", ";")
 		}
-		if quick, slow := transcript(header+body, states, false), transcript(header+body, states, true); quick != slow {
+		if quick, slow := log(header+body, states, false), log(header+body, states, true); quick != slow {
 			t.Fatalf("quickly\n%s\ncarefully\n%s", quick, slow)
 		}
 	})
