@@ -338,8 +338,16 @@ func TestConcurrentReleaseGivesOnePaper(t *testing.T) {
 	var wg sync.WaitGroup
 	var mu sync.Mutex
 	issued := map[string]int{}
+	ready, start := sync.WaitGroup{}, make(chan struct{})
 	for range 8 {
+		ready.Add(1)
 		wg.Go(func() {
+			_, err := h.Releasable(t.Context(), h.Lead, "B1") // each has its connection before they start
+			ready.Done()
+			if err != nil {
+				t.Error(err)
+			}
+			<-start
 			out, err := h.Release(t.Context(), h.Lead, "B1", serials)
 			if err != nil {
 				t.Error(err)
@@ -353,6 +361,8 @@ func TestConcurrentReleaseGivesOnePaper(t *testing.T) {
 			}
 		})
 	}
+	ready.Wait()
+	close(start)
 	wg.Wait()
 	for _, s := range serials {
 		if issued[s] != 1 {
