@@ -383,6 +383,14 @@ func TestReleaseButton(t *testing.T) {
 	if b := lead.page("/batches/26-001").all(".acts button[disabled]"); len(b) != 1 {
 		t.Error("before the end the release is not shown as not possible yet")
 	}
+	h.Batch(t, "26-002", 1)
+	for k := 1; k <= 10; k++ { // fails in M on day 10, with the trial going on
+		h.MustSave(t, h.Technician, h.Rate("26-002", 1, k, "7.5"))
+	}
+	running := lead.page("/batches/26-002")
+	if got := running.texts("ul.tally li"); !slices.Contains(got, "fail 1 100.0 %") || len(running.all(".acts button[disabled]")) != 1 {
+		t.Errorf("while the trial goes on: %v, %v", got, running.texts(".title .acts"))
+	}
 	h.Run(t, "26-001", [][]string{good, good})
 	lead = visit(t, base, "lead")
 	if a := lead.page("/batches/26-001").all(".title a.main"); len(a) != 1 || a[0].text() != "Release 2 certificates" {
