@@ -52,7 +52,7 @@ func TestRoundByTouch(t *testing.T) {
 	webtest.Eval[bool](tab, `(window.taps = 0, addEventListener("click", () => taps++, true), true)`)
 	want := 0
 	for i := range 4 {
-		value := fmt.Sprintf("−%d.5", i+1)
+		value := fmt.Sprintf("-%d.5", i+1)
 		for _, sign := range value {
 			tab.Tap(fmt.Sprintf(`[data-key="%c"]`, sign))
 			want++
@@ -394,6 +394,9 @@ func TestEndFromThePlace(t *testing.T) {
 	tab.Press(".btn.grave")
 	if got := tab.Text(`[data-place="2"]`); !strings.Contains(got, "rejected") {
 		t.Errorf("the place shows %q", got)
+	}
+	if tab.Count(`[data-place="2"].off.here`) != 1 {
+		t.Error("the place that left the trial does not show that it is the one in hand")
 	}
 	if got := tab.Text("#n-read"); got != "0 of 4" {
 		t.Errorf("read %q, want 0 of 4", got)

@@ -348,7 +348,7 @@ function createDrawing() {
   function standing(p, here) {
     if (p.ask && p.ask.kind !== "look") return { state: "look trouble", word: say(p.ask.kind), says: say("stateTrouble") };
     if (p.state === "look") return { state: p === here ? "look here" : "look", sign: "look", word: say("again1"), says: say("stateLook") };
-    if (p.state === "off") return { state: "off", sign: "void", word: p.end, says: p.end };
+    if (p.state === "off") return { state: p === here ? "off here" : "off", sign: "void", word: p.end, says: p.end };
     if (p.state === "empty") return { state: "empty", says: say("stateEmpty") };
     const kept = p.kept ? " kept" : "";
     const word = p.code ? say("short-" + p.code) : say("read");
