@@ -62,6 +62,45 @@ func TestWholeJobByKeyboard(t *testing.T) {
 	release(t, lead, "26-500", 5)
 }
 
+// touchRates are the daily rates of two movements whose states are read in full seconds by touch.
+var touchRates = []int{1, 7}
+
+// The whole job again at a tablet, by touch: states at all sixteen rounds. One gains 1 s/d and passes,
+// the other 7 s/d, which category 1 does not allow.
+func TestWholeJobByTouch(t *testing.T) {
+	t.Parallel()
+	h := storetest.New(t)
+	base := webtest.Serve(t, h.Lab)
+	tab := webtest.Start(t, base)
+	tab.Resize(webtest.Tablet)
+	register(tab, "26-501", "state", len(touchRates))
+	for k := range 16 {
+		round(h, tab, "26-501", k, func() {
+			for _, rate := range touchRates {
+				touch(tab, fmt.Sprintf("+%d", rate*k))
+			}
+		})
+	}
+	lead := webtest.Start(t, base)
+	lead.Resize(webtest.Tablet)
+	lead.SignIn("lead", storetest.Password)
+	for i, want := range []string{"pass", "fail"} {
+		lead.Go("/batches/26-501/movements/" + jobSerial(i))
+		if text := lead.Text("main"); !strings.Contains(text, want) {
+			t.Errorf("rate sheet of %s does not say %s", jobSerial(i), want)
+		}
+	}
+	release(t, lead, "26-501", len(touchRates))
+}
+
+// touch enters a value at the page's own keys.
+func touch(tab *webtest.Tab, value string) {
+	for _, sign := range value {
+		tab.Tap(fmt.Sprintf(`[data-key="%c"]`, sign))
+	}
+	tab.Tap("#enter")
+}
+
 func jobSerial(i int) string { return fmt.Sprintf("KW-%03d", 7*i+11) }
 
 // register fills in the form of a new batch, due now.
@@ -87,11 +126,14 @@ func register(tab *webtest.Tab, code, entry string, pieces int) {
 	}
 }
 
-// round is the morning of round k: sign in, open, read, close.
+// round is the morning of round k: sign in when the night has ended the session, open, read, close.
 func round(h *storetest.House, tab *webtest.Tab, code string, k int, read func()) {
 	h.Clock.Set(storetest.Start.Add(time.Duration(k) * 24 * time.Hour))
-	tab.SignIn("technician", storetest.Password)
-	tab.Go(fmt.Sprintf("/batches/%s/rounds/%d", code, k))
+	address := fmt.Sprintf("/batches/%s/rounds/%d", code, k)
+	if tab.Go(address); !strings.HasPrefix(tab.Path(), address) {
+		tab.SignIn("technician", storetest.Password)
+		tab.Go(address)
+	}
 	tab.Press(`form[action$="/open"] button`)
 	read()
 	tab.Until(`document.querySelectorAll(".holder .kept").length === 0 && document.querySelector("#saved").textContent !== ""`)
