@@ -103,7 +103,7 @@ check 'needs no browser' lines 0
 
 apt_root='echo "$DEBIAN_FRONTEND $*" >>'
 house root
-stand_in "$dir/bin/apt-get" "${apt_root}$dir/calls" 'case "$*" in *install*)' \
+stand_in "$dir/bin/apt-get" "${apt_root}$dir/calls" 'case "$*" in *-s*install*) exit 100;; *install*)' \
   "  grep -q 'create_main_cluster = false' $dir/system/etc/postgresql-common/createcluster.conf || exit 3" \
   "  touch $dir/installed;; esac"
 stand_in "$dir/bin/dpkg" 'exit 0'
@@ -118,6 +118,33 @@ check 'asks for what is missing' called '^noninteractive .*install.*postgresql c
 check 'never calls sudo' not called sudo
 setup
 check 'the next run says nothing' lines 0
+
+house root-light
+stand_in "$dir/bin/apt-get" "${apt_root}$dir/calls" 'case "$*" in *-s*install*) exit 0;; *install*)' \
+  "  mkdir -p $dir/system/usr/lib/chromium; printf '#!/bin/sh\n' >$dir/system/usr/lib/chromium/chromium-headless-shell" \
+  "  chmod +x $dir/system/usr/lib/chromium/chromium-headless-shell;; esac"
+stand_in "$dir/bin/dpkg" 'exit 0'; server "$dir/bin"; font "$dir/system"
+setup
+check 'takes the light browser where it is a package' notes "CHROMIUM=$dir/system/usr/lib/chromium/chromium-headless-shell"
+
+house root-lightens
+stand_in "$dir/bin/apt-get" "${apt_root}$dir/calls" 'case "$*" in *-s*install*) exit 0;; *install*)' \
+  "  mkdir -p $dir/system/usr/lib/chromium; printf '#!/bin/sh\n' >$dir/system/usr/lib/chromium/chromium-headless-shell" \
+  "  chmod +x $dir/system/usr/lib/chromium/chromium-headless-shell;; esac"
+server "$dir/bin"; font "$dir/system"; browser "$dir/system/usr/bin/chromium"
+setup
+check 'adds the light browser' notes "CHROMIUM=$dir/system/usr/lib/chromium/chromium-headless-shell"
+setup
+check 'the next run says nothing' lines 0
+
+house root-stays-heavy
+stand_in "$dir/bin/apt-get" "${apt_root}$dir/calls" 'case "$*" in *-s*install*) exit 0;; *install*) exit 100;; esac'
+server "$dir/bin"; font "$dir/system"; browser "$dir/system/usr/bin/chromium"
+setup
+check 'succeeds without it' status 0
+check 'keeps the browser that is there' notes "CHROMIUM=$dir/system/usr/bin/chromium"
+setup
+check 'does not try again' lines 0
 
 house root-fails
 stand_in "$dir/bin/apt-get" 'echo "no such package"; exit 100'; stand_in "$dir/bin/dpkg" 'exit 0'
