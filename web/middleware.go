@@ -8,6 +8,7 @@ import (
 	"net"
 	"net/http"
 	"net/netip"
+	"net/url"
 	"runtime/debug"
 	"strings"
 	"time"
@@ -101,6 +102,21 @@ func (s *server) recovered(next http.Handler) http.Handler {
 		}()
 		next.ServeHTTP(w, r)
 	})
+}
+
+// legible answers an address that holds what no stored name can hold, a NUL or bytes that are no
+// UTF-8, as one that leads nowhere.
+func legible(notFound http.Handler) func(http.Handler) http.Handler {
+	return func(next http.Handler) http.Handler {
+		return http.HandlerFunc(func(w http.ResponseWriter, r *http.Request) {
+			query, err := url.QueryUnescape(r.URL.RawQuery)
+			if err != nil || !page.Legible(query) || !page.Legible(r.URL.Path) {
+				notFound.ServeHTTP(w, r)
+				return
+			}
+			next.ServeHTTP(w, r)
+		})
+	}
 }
 
 // limited bounds the body of a request; reading beyond gives an error that becomes status 413.

@@ -221,6 +221,38 @@ func TestLargeBody(t *testing.T) {
 	}
 }
 
+// What the database cannot keep is answered before it is asked: in a form, a path and a query.
+func TestIllegibleText(t *testing.T) {
+	t.Parallel()
+	c, _ := serve(t, Config{Lab: storetest.New(t).Lab})
+	texts := []string{"x\x00", "\xff"}
+	for _, bad := range texts {
+		if res, _ := c.post("/login", url.Values{"name": {bad}, "password": {"p"}}); res.StatusCode != 422 {
+			t.Errorf("a form with %q: %d, want 422", bad, res.StatusCode)
+		}
+	}
+	c.signIn("lead", storetest.Password, "")
+	for _, bad := range texts {
+		for _, address := range []string{"/batches/" + url.PathEscape(bad), "/search?q=" + url.QueryEscape(bad), "/api/v1/batches/" + url.PathEscape(bad)} {
+			if res, _ := c.get(address); res.StatusCode != 404 {
+				t.Errorf("%s: %d, want 404", address, res.StatusCode)
+			}
+		}
+	}
+}
+
+// Pages travel compressed.
+func TestPagesArePacked(t *testing.T) {
+	t.Parallel()
+	c, _ := serve(t, Config{Lab: storetest.New(t).Lab})
+	if res, _ := c.get("/login", "Accept-Encoding", "gzip"); res.Header.Get("Content-Encoding") != "gzip" {
+		t.Errorf("the encoding is %q, want gzip", res.Header.Get("Content-Encoding"))
+	}
+	if res, body := c.get("/login", "Accept-Encoding", "identity"); res.Header.Get("Content-Encoding") != "" || !strings.Contains(body, "<html") {
+		t.Error("who cannot unpack does not get the page as it is")
+	}
+}
+
 func TestFaultsAreCountedNotTold(t *testing.T) {
 	t.Parallel()
 	house := storetest.New(t)

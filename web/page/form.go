@@ -5,6 +5,7 @@ import (
 	"net/http"
 	"net/url"
 	"strings"
+	"unicode/utf8"
 
 	"github.com/a-h/templ"
 
@@ -49,8 +50,19 @@ func ReadForm(r *http.Request, labels ...Label) (*Form, error) {
 		return nil, &store.Error{Kind: store.KindInvalid, Code: "form_unreadable"}
 	}
 	f.values = r.PostForm
+	for name, values := range f.values {
+		for _, v := range values {
+			if !Legible(v) {
+				return nil, &store.Error{Kind: store.KindInvalid, Code: "text_nul", Args: map[string]string{"field": name}}
+			}
+		}
+	}
 	return f, nil
 }
+
+// Legible tells whether a text can be kept: the database takes neither a NUL nor bytes that are no
+// UTF-8. No keyboard makes either, so a form with one was not made by our pages.
+func Legible(s string) bool { return utf8.ValidString(s) && !strings.Contains(s, "\x00") }
 
 // Get is a field without the blanks around it; Raw is it as typed.
 func (f *Form) Get(name string) string { return strings.TrimSpace(f.values.Get(name)) }
