@@ -472,6 +472,7 @@ func (l *Lab) CloseRemark(ctx context.Context, a Actor, id uuid.UUID, state, wor
 		if found[0].State == "closed" {
 			return failure(KindConflict, "remark_closed")
 		}
+		w.batch(found[0].Batch)
 		w.act.Body = map[string]any{"remark": id.String(), "state": state, "words": words}
 		rows.QueueRemarkState(w.out, id, found[0].Nth+1, state, words, w.now, w.act.ID)
 		return nil

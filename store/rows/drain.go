@@ -41,7 +41,10 @@ func QueueNotice(b *pgx.Batch, channel, payload string) {
 	b.Queue(`SELECT pg_notify($1, $2)`, channel, payload)
 }
 
-// QueueStale marks the summaries of batches, of every engine, as older than their data.
+// QueueStale marks the summaries of batches, of every engine, as older than their data. They are
+// locked in the order in which summaries are claimed, so that neither waits for the other in a ring.
 func QueueStale(b *pgx.Batch, batches []uuid.UUID) {
-	b.Queue(`UPDATE batch_summary SET stale = true WHERE batch = ANY ($1::uuid[])`, batches)
+	b.Queue(`UPDATE batch_summary s SET stale = true
+		FROM (SELECT batch, engine FROM batch_summary WHERE batch = ANY ($1::uuid[]) ORDER BY batch, engine FOR UPDATE) o
+		WHERE s.batch = o.batch AND s.engine = o.engine`, batches)
 }

@@ -85,6 +85,7 @@ func QueueEnding(b *pgx.Batch, e Ending, act uuid.UUID) {
 // Remark is a remark with its newest state.
 type Remark struct {
 	ID     uuid.UUID
+	Batch  uuid.UUID
 	No     *int16
 	Serial *string
 	Step   *int16
@@ -97,7 +98,7 @@ type Remark struct {
 	Last   string
 }
 
-const remarkQuery = `SELECT k.id, k.no, m.serial, k.step, k.kind, k.words, s.state, a.at, coalesce(w.title, '') AS by, s.nth, s.words AS last
+const remarkQuery = `SELECT k.id, k.batch, k.no, m.serial, k.step, k.kind, k.words, s.state, a.at, coalesce(w.title, '') AS by, s.nth, s.words AS last
 	FROM remark k JOIN act a ON a.id = k.act LEFT JOIN account w ON w.id = a.actor
 	LEFT JOIN movement m ON m.batch = k.batch AND m.no = k.no
 	JOIN LATERAL (SELECT state, nth, words FROM remark_state s WHERE s.remark = k.id ORDER BY nth DESC LIMIT 1) s ON true `
