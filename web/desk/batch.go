@@ -84,6 +84,9 @@ func (v batchView) acts() (acts []page.Act) {
 	if v.may.verdicts {
 		acts = append(acts, page.Act{Text: c.Say(words.ValuesAsCSV), URL: page.Under(page.BatchURL(code), "sheets.csv")})
 	}
+	if n := v.papers(); v.may.papers && n > 0 {
+		acts = append(acts, page.Act{Text: c.Say(words.CountPapers.With(n)), URL: page.Under(page.BatchURL(code), "certificates")})
+	}
 	if v.may.enter && v.due >= 0 {
 		acts = append(acts, page.Act{Text: c.Say(words.RoundNumber.With(v.due)), URL: page.RoundURL(code, v.due), Main: !v.may.release || ready+reports == 0})
 	}
@@ -101,6 +104,16 @@ func (v batchView) acts() (acts []page.Act) {
 		acts = append(acts, release)
 	}
 	return acts
+}
+
+// papers counts the movements that have a certificate or a report.
+func (v batchView) papers() (n int) {
+	for i := range v.pieces {
+		if v.pieces[i].Paper != "" {
+			n++
+		}
+	}
+	return n
 }
 
 // ready counts what has a verdict and no paper yet; what holds a release is looked at on its page.

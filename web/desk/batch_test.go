@@ -396,6 +396,15 @@ func TestReleaseButton(t *testing.T) {
 	if a := lead.page("/batches/26-001").all(".title a.main"); len(a) != 1 || a[0].text() != "Release 2 certificates" {
 		t.Errorf("after the end: %v", lead.page("/batches/26-001").texts(".title .acts"))
 	}
+	if _, err := h.Release(t.Context(), h.Lead, "26-001", []string{storetest.Serial(1)}); err != nil {
+		t.Fatal(err)
+	}
+	if got := lead.page("/batches/26-001").texts(".title .acts a"); !slices.Contains(got, "1 paper") {
+		t.Errorf("after a release: %v", got)
+	}
+	if got := lead.page("/batches/26-001/certificates").texts("h1"); len(got) != 1 {
+		t.Errorf("behind that: %v", got)
+	}
 	manager := visit(t, base, "manager")
 	if acts := manager.page("/batches/26-001").texts(".title .acts"); strings.Contains(strings.Join(acts, " "), "Release") {
 		t.Errorf("the manager is offered %v", acts)
