@@ -3,8 +3,14 @@ package trial
 import "math/big"
 
 // CannotPass tells whether the movement is open and no real numbers for its blank days, free of
-// each other, satisfy all limited criteria together. Exact; other than Value.Unreachable, which
-// looks at each criterion by itself within ±60 s/d. Rates beyond the slice count as blank.
+// each other, satisfy all limited criteria together; other than Value.Unreachable, which looks at
+// each criterion by itself within ±60 s/d. Rates beyond the slice count as blank.
+//
+// True is always right. False is right as long as the open criteria ask for nothing but flat
+// sides: linear formulas, upper limits of magnitudes, and weighted sums in which every magnitude
+// pulls towards its limit. What else a programme may ask is left out of the joint question, so
+// that the movement counts as able to pass: lower limits of magnitudes, sums in which a magnitude
+// pulls the other way, and standard deviations but for their least value by themselves.
 func (j *Judge) CannotPass(rates []Rate) bool {
 	p := j.prospect()
 	defer j.solvers.Put(p)
@@ -14,7 +20,8 @@ func (j *Judge) CannotPass(rates []Rate) bool {
 // Needed gives the closed interval in which the rate of a blank day (1..n) must lie for the
 // movement still to be able to pass: with any rate inside it some filling of the other blank days
 // passes, with any outside none does. ok is false if the day is read, if the movement is not open
-// or cannot pass whatever comes, or if the day is not bounded on both sides.
+// or cannot pass whatever comes, if the day is not bounded on both sides, or if an open criterion is
+// of those CannotPass leaves out.
 func (j *Judge) Needed(rates []Rate, day int) (lo, hi Exact, ok bool) {
 	if day < 1 || day > len(j.prog.Days) {
 		return Exact{}, Exact{}, false
@@ -67,6 +74,11 @@ func (p *prospect) load(rates []Rate) bool {
 		return false
 	}
 	p.sit = situation{known: p.known}
+	if j.exactOnly {
+		j.fix(rates, p.r, p.known) // for what is known alone
+		p.sit.rates = rates
+		return true
+	}
 	if j.whole(rates, p.r, p.known) {
 		p.sit.r = p.r
 		return true
@@ -129,7 +141,7 @@ func (p *prospect) solve() (yes bool, d *dictionary) {
 // interval is the range of a blank day in thousandths; nil where unbounded or impossible.
 func (p *prospect) interval(day int32) (least, most *big.Rat) {
 	yes, d := p.solve()
-	if !yes {
+	if !yes || d != nil && d.sys.loose {
 		return nil, nil
 	}
 	if d != nil {
@@ -152,7 +164,7 @@ func (p *prospect) interval(day int32) (least, most *big.Rat) {
 	}
 	s := p.judge.rowsOf(p.open(), false, p.known)
 	v, ok := s.vars[day]
-	if !ok {
+	if !ok || s.loose {
 		return nil, nil
 	}
 	return newTableau(p.judge, s, &p.sit).extreme(v, -1), newTableau(p.judge, s, &p.sit).extreme(v, 1)
@@ -161,7 +173,12 @@ func (p *prospect) interval(day int32) (least, most *big.Rat) {
 // feasible tells whether real values of the blank days satisfy some criteria together, within
 // ±60 s/d if boxed: the exact answer behind Value.Unreachable.
 func (j *Judge) feasible(crits []int, box bool, known []uint64, sit situation) bool {
-	sit.known = known
+	if j.exactOnly && sit.rates == nil {
+		sit = situation{rates: ratesOf(sit.r, known)}
+	} else if j.exactOnly {
+		sit.r = nil
+	}
+	sit.known, sit.box = known, box
 	s := j.rowsOf(crits, box, known)
 	var p point
 	if d := newDictionary(s); d != nil {

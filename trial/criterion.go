@@ -13,21 +13,28 @@ import (
 //	total     Σ |second - first| over pairs
 //	greatest  greatest |second - first|
 //	deviation greatest |n · rate - Σ rates| over n days
+//	extent    greatest less least sum over periods
+//	step      greatest |sum - sum of the period before|
 //
-// so that a verdict needs no division: N is compared with limit · q.
+// so that a verdict needs no division: N is compared with limit · q. Two more are no such function
+// and are always computed by exact numbers: root (root.go) and mixed (sum.go).
 type criterion struct {
-	shape   shape
-	days    []int32    // days that must be read, from 0, in order
-	need    []uint64   // the same as bits
-	weights []int64    // linear, beside days
-	pairs   [][2]int32 // total, greatest
-	overlap bool       // pairs share days, so that they are not free of each other
-	q       int64
-	lip     int64 // N moves by at most lip when every rate moves by at most 1
-	limited bool
-	whole   bounds // limits against N for rates in thousandths
-	fixed   bounds // the same for rates in thousandths / 2^fixedBits
-	lo, hi  *big.Rat
+	shape           shape
+	days            []int32    // days that must be read, from 0, in order
+	need            []uint64   // the same as bits
+	weights         []int64    // linear, beside days
+	pairs           [][2]int32 // total, greatest
+	overlap         bool       // pairs share days, so that they are not free of each other
+	periods         [][]int32  // extent, step
+	under           int64      // root: what N is divided by below the root
+	addends         []addend   // sum
+	constant, shift Exact      // sum: its own constant; that and those of sums in it
+	q               int64
+	lip             int64 // N moves by at most lip when every rate moves by at most 1
+	limited         bool
+	whole           bounds // limits against N for rates in thousandths
+	fixed           bounds // the same for rates in thousandths / 2^fixedBits
+	lo, hi          *big.Rat
 }
 
 type shape uint8
@@ -37,7 +44,17 @@ const (
 	total
 	greatest
 	deviation
+	extent
+	step
+	root
+	mixed
 )
+
+// plain tells the shapes that judge.go's fast path and the closed forms of reach.go know.
+func (s shape) plain() bool { return s <= deviation }
+
+// composite tells the shapes whose values are always exact numbers.
+func (s shape) composite() bool { return s >= root }
 
 // bounds are the limits of N as whole numbers. Where a limit falls between two whole numbers the
 // pair encloses it; without a limit both lie beyond anything N can be.
@@ -47,7 +64,7 @@ type bounds struct {
 }
 
 // compileFormula turns a checked formula into a criterion without limits.
-func compileFormula(p *Programme, path string, f Formula) (criterion, error) {
+func compileFormula(p *Programme, path string, f Formula, earlier []criterion) (criterion, error) {
 	switch f.Kind {
 	case Mean:
 		return p.linear(f.Days, nil, Ratio(1, 1)), nil
@@ -68,8 +85,18 @@ func compileFormula(p *Programme, path string, f Formula) (criterion, error) {
 		c := criterion{shape: deviation, q: n, lip: 2 * n}
 		c.require(p, f.Days)
 		return c, nil
+	case RangeOf:
+		return p.periodic(extent, singles(f.Days)), nil
+	case PeriodRange:
+		return p.periodic(extent, f.Periods), nil
+	case GreatestStep:
+		return p.periodic(step, f.Periods), nil
+	case StandardDeviation:
+		return p.rooted(f.Days, f.Divisor), nil
+	case WeightedSum:
+		return p.summed(f, earlier), nil
 	}
-	return criterion{}, fault(path+".kind", "not_built", string(f.Kind))
+	return criterion{}, fault(path+".kind", "unknown_kind", string(f.Kind))
 }
 
 // linear is (mean of of - mean of from) / by.
@@ -136,8 +163,16 @@ func (c *criterion) limit(path string, l Limit, fixedBits uint, most int64) erro
 		k := new(big.Int).Lsh(big.NewInt(1000*c.q), bits)
 		return r.Mul(r, new(big.Rat).SetInt(k))
 	}
-	if l.HasMin && c.shape != linear && l.Min.Sign() > 0 {
-		return fault(path+".min", "not_built", "a lower limit on a magnitude")
+	switch c.shape {
+	case root:
+		c.limitSquares(l)
+		return nil
+	case mixed:
+		c.limitSum(l)
+		return nil
+	}
+	if l.HasMin && l.Min.Sign() > 0 && c.shape == total && c.overlap && c.frontier() > mostFrontier {
+		return fault(path+".min", "not_built", "a lower limit on so many pairs that share days")
 	}
 	c.whole = bounds{-most, -most, most, most}
 	c.fixed = c.whole
@@ -192,6 +227,8 @@ func (c *criterion) eval(r []int64) int64 {
 			n = max(n, magnitude(r[p[1]]-r[p[0]]))
 		}
 		return n
+	case extent, step:
+		return c.evalPeriods(r)
 	}
 	sum, least, most := spread(r, c.days)
 	n := int64(len(c.days))
@@ -235,6 +272,10 @@ func (c *criterion) exactN(rate func(d int32) *big.Rat) *big.Rat {
 			}
 		}
 		return n
+	case extent, step:
+		return c.exactPeriods(rate)
+	case root:
+		return c.exactSquares(rate)
 	}
 	sum, count := new(big.Rat), new(big.Rat).SetInt64(int64(len(c.days)))
 	for _, d := range c.days {

@@ -9,8 +9,8 @@ import (
 	"strings"
 )
 
-// Exact is an exact rational number. The zero value is 0. Values are immutable and may be copied
-// and shared between goroutines.
+// Exact is an exact number: rational, or made of square roots of rationals, as a standard deviation
+// is. The zero value is 0. Values are immutable and may be copied and shared between goroutines.
 //
 // Most numbers are a fraction of two int64. A criterion over rates whose intervals were not 24 h
 // may need hundreds of bits: it is then kept as an enclosure [num/den, (num+slack)/den] beside the
@@ -26,6 +26,7 @@ type Exact struct {
 // source is where a wide Exact gets its full value: a number, or a criterion over kept rates.
 type source struct {
 	rat   *big.Rat
+	surd  *surd
 	judge *Judge
 	rates []Rate
 }
@@ -80,13 +81,16 @@ func (e Exact) small() bool { return e.src == nil }
 // frac gives the small form with a denominator above zero.
 func (e Exact) frac() (num, den int64) { return e.num, max(e.den, 1) }
 
-// Rat gives the number as a new big.Rat.
+// Rat gives the number as a new big.Rat. An irrational one is cut to 30 decimals, towards minus
+// infinity; comparisons, sums and decimals do not go through that.
 func (e Exact) Rat() *big.Rat {
-	if e.small() {
+	switch {
+	case e.small():
 		return big.NewRat(e.frac())
-	}
-	if e.src.rat != nil {
+	case e.src.rat != nil:
 		return new(big.Rat).Set(e.src.rat)
+	case e.src.surd != nil:
+		return e.src.surd.cut()
 	}
 	return e.src.judge.crits[e.at].exact(e.src.rates)
 }
@@ -103,6 +107,10 @@ func (e Exact) Float() float64 {
 
 // Cmp compares exactly: -1 if e < f, 0 if equal, +1 if e > f.
 func (e Exact) Cmp(f Exact) int {
+	if e.irrational() || f.irrational() {
+		d := surdOf(e).plus(surdOf(f), -1)
+		return signOf(d.radicands, d.coefs)
+	}
 	if !e.bounded() || !f.bounded() {
 		return e.Rat().Cmp(f.Rat())
 	}
@@ -118,7 +126,7 @@ func (e Exact) Cmp(f Exact) int {
 }
 
 // bounded tells whether num, den and slack enclose the number.
-func (e Exact) bounded() bool { return e.src == nil || e.src.rat == nil }
+func (e Exact) bounded() bool { return e.src == nil || e.src.judge != nil }
 
 // Sign is -1, 0 or +1.
 func (e Exact) Sign() int { return e.Cmp(Exact{}) }
@@ -128,6 +136,9 @@ func (e Exact) Add(f Exact) Exact {
 	if s, ok := addSmall(e, f, 1); ok {
 		return s
 	}
+	if e.irrational() || f.irrational() {
+		return surdOf(e).plus(surdOf(f), 1).exact()
+	}
 	return FromRat(new(big.Rat).Add(e.Rat(), f.Rat()))
 }
 
@@ -136,11 +147,19 @@ func (e Exact) Sub(f Exact) Exact {
 	if s, ok := addSmall(e, f, -1); ok {
 		return s
 	}
+	if e.irrational() || f.irrational() {
+		return surdOf(e).plus(surdOf(f), -1).exact()
+	}
 	return FromRat(new(big.Rat).Sub(e.Rat(), f.Rat()))
 }
 
 // Times gives e · f.
-func (e Exact) Times(f Exact) Exact { return FromRat(new(big.Rat).Mul(e.Rat(), f.Rat())) }
+func (e Exact) Times(f Exact) Exact {
+	if e.irrational() || f.irrational() {
+		return surdOf(e).times(surdOf(f)).exact()
+	}
+	return FromRat(new(big.Rat).Mul(e.Rat(), f.Rat()))
+}
 
 // Neg gives -e.
 func (e Exact) Neg() Exact { return Exact{}.Sub(e) }
@@ -166,8 +185,13 @@ func addSmall(e, f Exact, sign int64) (Exact, bool) {
 	return Exact{num: num, den: den}, true
 }
 
-// String prints p/q in lowest terms, or p alone for a whole number.
-func (e Exact) String() string { return e.Rat().RatString() }
+// String prints p/q in lowest terms, p alone for a whole number, and 30 decimals of an irrational one.
+func (e Exact) String() string {
+	if e.irrational() {
+		return e.Decimal(cutPlaces)
+	}
+	return e.Rat().RatString()
+}
 
 // short prints the decimal with as few places as tell the whole number, at most three.
 func (e Exact) short() string {
@@ -239,25 +263,35 @@ func roundHalfEven(num, scale, den int64) (int64, bool) {
 
 // slowDecimal is Decimal by big numbers.
 func (e Exact) slowDecimal(places int) string {
-	r := e.Rat()
-	scale := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(places)), nil)
-	num := new(big.Int).Mul(r.Num(), scale)
-	neg := num.Sign() < 0
-	q, m := new(big.Int).QuoRem(num.Abs(num), r.Denom(), new(big.Int))
-	if c := m.Lsh(m, 1).Cmp(r.Denom()); c > 0 || c == 0 && q.Bit(0) == 1 {
-		q.Add(q, big.NewInt(1))
+	var q *big.Int
+	if e.irrational() {
+		q = e.src.surd.rounded(places)
+	} else {
+		q = roundRat(e.Rat(), places)
 	}
-	s := q.String()
+	neg := q.Sign() < 0
+	s := q.Abs(q).String()
 	if places > 0 {
 		if len(s) <= places {
 			s = strings.Repeat("0", places+1-len(s)) + s
 		}
 		s = s[:len(s)-places] + "." + s[len(s)-places:]
 	}
-	if neg && q.Sign() != 0 {
+	if neg {
 		s = "-" + s
 	}
 	return s
+}
+
+// roundRat is r · 10^places rounded half to even.
+func roundRat(r *big.Rat, places int) *big.Int {
+	scale := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(places)), nil)
+	q, m := scale.Mul(r.Num(), scale), new(big.Int)
+	q.DivMod(q, r.Denom(), m) // m >= 0
+	if c := m.Lsh(m, 1).Cmp(r.Denom()); c > 0 || c == 0 && q.Bit(0) == 1 {
+		q.Add(q, big.NewInt(1))
+	}
+	return q
 }
 
 // appendScaled prints q / 10^places.

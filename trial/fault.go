@@ -36,6 +36,11 @@ var faultTexts = map[string]string{
 	"unknown_day":      "day %s is not a day of the programme",
 	"repeated":         "%s appears twice",
 	"empty":            "is empty",
+	"too_few":          "has too few entries, at least %s are needed",
+	"too_many":         "has too many entries, at most %s are allowed",
+	"too_many_roots":   "rests on too many standard deviations, at most %s are allowed",
+	"too_deep":         "rests on sums of sums more than %s deep",
+	"not_before":       "%s is not the symbol of a criterion listed before this one",
 	"same_day":         "both days of a pair are day %s",
 	"same_temperature": "both sides have the same mean temperature, so there is nothing to divide by",
 	"unknown_kind":     "%s is not a kind of formula",
@@ -81,8 +86,13 @@ func (p *Programme) checkHead() *Fault {
 	return nil
 }
 
-// mostDays bounds a programme: a year and a day.
-const mostDays = 366
+// A programme may have a year and a day, that many criteria as fill a page or two, and pairs enough
+// for every two of 45 days.
+const (
+	mostDays     = 366
+	mostCriteria = 60
+	mostPairs    = 990
+)
 
 func (p *Programme) checkDays() *Fault {
 	if len(p.Days) == 0 {
@@ -165,6 +175,9 @@ func (p *Programme) checkCriteria() *Fault {
 	if len(p.Criteria) == 0 {
 		return fault("criteria", "empty")
 	}
+	if len(p.Criteria) > mostCriteria {
+		return fault("criteria", "too_many", fmt.Sprint(mostCriteria))
+	}
 	seen := map[string]bool{}
 	for i, c := range p.Criteria {
 		path := fmt.Sprintf("criteria[%d]", i)
@@ -184,6 +197,16 @@ func (p *Programme) checkCriteria() *Fault {
 			return f
 		}
 		seen[c.Symbol] = true
+	}
+	return p.checkProbabilities(seen)
+}
+
+// checkProbabilities keeps a symbol from being the name of another's column of probabilities.
+func (p *Programme) checkProbabilities(seen map[string]bool) *Fault {
+	for i, c := range p.Criteria {
+		if other, ok := strings.CutPrefix(c.Symbol, "p"); ok && seen[other] {
+			return fault(criterionPath(i)+".symbol", "bad_symbol", c.Symbol)
+		}
 	}
 	return nil
 }
@@ -231,6 +254,9 @@ func (p *Programme) checkFormula(path string, f Formula, earlier map[string]bool
 		if f.Kind == StandardDeviation && f.Divisor != "n" && f.Divisor != "n-1" {
 			return fault(path+".divisor", "unknown_value", f.Divisor)
 		}
+		if f.Divisor == "n-1" && len(f.Days) == 1 {
+			return fault(path+".days", "too_few", "2")
+		}
 		return p.checkDayList(path+".days", f.Days)
 	case MeanVariation, GreatestVariation:
 		return p.checkPairs(path+".pairs", f.Pairs)
@@ -247,7 +273,10 @@ func (p *Programme) checkFormula(path string, f Formula, earlier map[string]bool
 		return nil
 	case PeriodRange, GreatestStep:
 		if len(f.Periods) < 2 {
-			return fault(path+".periods", "empty")
+			return fault(path+".periods", "too_few", "2")
+		}
+		if len(f.Periods) > mostDays {
+			return fault(path+".periods", "too_many", fmt.Sprint(mostDays))
 		}
 		for i, period := range f.Periods {
 			if fl := p.checkDayList(fmt.Sprintf("%s.periods[%d]", path, i), period); fl != nil {
@@ -256,17 +285,54 @@ func (p *Programme) checkFormula(path string, f Formula, earlier map[string]bool
 		}
 		return nil
 	case WeightedSum:
-		if len(f.Terms) == 0 {
-			return fault(path+".terms", "empty")
-		}
-		for i, t := range f.Terms {
-			if !earlier[t.Symbol] {
-				return fault(fmt.Sprintf("%s.terms[%d].symbol", path, i), "unknown_value", t.Symbol)
-			}
-		}
-		return nil
+		return p.checkTerms(path+".terms", f.Terms, earlier)
 	}
 	return fault(path+".kind", "unknown_kind", string(f.Kind))
+}
+
+// mostRoots bounds the standard deviations a weighted sum may rest on: to compare such a sum exactly
+// takes work that doubles with each. mostNested bounds sums within sums within sums.
+const (
+	mostRoots  = 6
+	mostNested = 3
+)
+
+func (p *Programme) checkTerms(path string, terms []Term, earlier map[string]bool) *Fault {
+	if len(terms) == 0 {
+		return fault(path, "empty")
+	}
+	if len(terms) > mostCriteria {
+		return fault(path, "too_many", fmt.Sprint(mostCriteria))
+	}
+	for i, t := range terms {
+		if !earlier[t.Symbol] {
+			return fault(fmt.Sprintf("%s[%d].symbol", path, i), "not_before", t.Symbol)
+		}
+	}
+	roots := map[string]bool{}
+	switch {
+	case !p.shallow(terms, mostNested, roots):
+		return fault(path, "too_deep", fmt.Sprint(mostNested))
+	case len(roots) > mostRoots:
+		return fault(path, "too_many_roots", fmt.Sprint(mostRoots))
+	}
+	return nil
+}
+
+// shallow collects the standard deviations that terms rest on, and tells whether sums lie within
+// sums no deeper than allowed.
+func (p *Programme) shallow(terms []Term, levels int, roots map[string]bool) bool {
+	for _, t := range terms {
+		switch c, _ := p.Criterion(t.Symbol); c.Formula.Kind {
+		case StandardDeviation:
+			roots[t.Symbol] = true
+		case WeightedSum:
+			if levels == 1 || !p.shallow(c.Formula.Terms, levels-1, roots) {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 func (p *Programme) checkDayList(path string, days []int) *Fault {
@@ -290,6 +356,9 @@ func (p *Programme) checkDayList(path string, days []int) *Fault {
 func (p *Programme) checkPairs(path string, pairs [][2]int) *Fault {
 	if len(pairs) == 0 {
 		return fault(path, "empty")
+	}
+	if len(pairs) > mostPairs {
+		return fault(path, "too_many", fmt.Sprint(mostPairs))
 	}
 	for i, pair := range pairs {
 		at := fmt.Sprintf("%s[%d]", path, i)

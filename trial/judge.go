@@ -19,6 +19,8 @@ type Judge struct {
 	crits     []criterion
 	plan      plan // the same criteria for movements read in full
 	limited   bool // at least one criterion has limits
+	simple    bool // all criteria are of shapes the plan knows
+	exactOnly bool // a limited criterion asks the solver for exact numbers
 	all       []uint64
 	fixedBits uint
 	solvers   sync.Pool // *prospect, warm from the last movement; see cannot.go
@@ -45,13 +47,15 @@ func NewJudge(p *Programme, category string) (*Judge, error) {
 		j.all[d/64] |= 1 << (d % 64)
 	}
 	var steepest int64 = 1
+	j.simple = true
 	for i, c := range p.Criteria {
-		crit, err := compileFormula(p, criterionPath(i)+".formula", c.Formula)
+		crit, err := compileFormula(p, criterionPath(i)+".formula", c.Formula, j.crits)
 		if err != nil {
 			return nil, err
 		}
 		j.crits = append(j.crits, crit)
 		steepest = max(steepest, crit.lip)
+		j.simple = j.simple && crit.shape.plain()
 	}
 	// Room for N and for the products in reach: rate · steepest · 4 · days below 2^62.
 	room := 62 - int(rateBits) - int(bitsOf(steepest)) - 2 - int(bitsOf(int64(len(p.Days))))
@@ -63,8 +67,11 @@ func NewJudge(p *Programme, category string) (*Judge, error) {
 			return nil, err
 		}
 		j.limited = j.limited || j.crits[i].limited
+		j.exactOnly = j.exactOnly || j.crits[i].limited && j.crits[i].shape.composite()
 	}
-	j.plan = newPlan(j.crits, j.limited)
+	if j.simple {
+		j.plan = newPlan(j.crits, j.limited)
+	}
 	return j, nil
 }
 
@@ -112,7 +119,7 @@ func (j *Judge) MilliLong(rates []int64, known []uint64, out *Result) {
 func (j *Judge) milli(r []int64, known []uint64, out *Result) {
 	out.ready(j)
 	switch {
-	case subset(j.all, known) && inRange(r):
+	case j.simple && subset(j.all, known) && inRange(r):
 		out.fill()
 		out.Verdict, _ = j.plan.judge(r, out.Values[:len(out.Values)+1])
 	case knownInRange(r, known):
@@ -168,7 +175,7 @@ func (j *Judge) partial(known []uint64, out *Result, m reading) {
 		switch {
 		case subset(c.need, known):
 			v.Known = true
-			j.decide(i, v, &m)
+			j.decide(i, out.Values, &m)
 		case c.limited:
 			v.Unreachable = j.unreachable(i, known, &m)
 		default:
@@ -206,14 +213,10 @@ func (j *Judge) exactly(rates []Rate, known []uint64, out *Result) {
 		*v = Value{}
 		switch {
 		case subset(c.need, known):
-			n := c.exactN(exactRates(rates))
-			v.Known, v.Outcome = true, Unlimited
-			if c.limited {
-				v.Outcome = c.exactOutcome(n)
-			}
-			v.Exact = FromRat(n.Quo(n, new(big.Rat).SetInt64(1000*c.q)))
+			v.Known, v.Exact = true, j.valueOf(int32(i), exactRates(rates))
+			v.Outcome = j.contained(i, v.Exact)
 		case c.limited:
-			v.Unreachable = !j.feasible([]int{i}, true, slices.Clone(known), situation{rates: slices.Clone(rates)})
+			v.Unreachable = !j.reachable(i, slices.Clone(known), situation{rates: slices.Clone(rates)})
 		default:
 			v.Outcome = Unlimited
 		}
@@ -228,8 +231,13 @@ func exactRates(rates []Rate) func(d int32) *big.Rat {
 }
 
 // decide fills in a criterion whose days are all there.
-func (j *Judge) decide(i int, v *Value, m *reading) {
-	c := &j.crits[i]
+func (j *Judge) decide(i int, values []Value, m *reading) {
+	c, v := &j.crits[i], &values[i]
+	if c.shape.composite() {
+		v.Exact = j.composed(c, values, m)
+		v.Outcome = j.contained(i, v.Exact)
+		return
+	}
 	n := c.eval(m.r)
 	if m.rates == nil {
 		v.num = n
@@ -243,6 +251,27 @@ func (j *Judge) decide(i int, v *Value, m *reading) {
 	if v.Outcome = c.outcome(n, c.lip, c.fixed); v.Outcome == Undecided {
 		v.Outcome = c.exactOutcome(c.exactN(exactRates(slices.Clone(m.rates))))
 	}
+}
+
+// composed is a composite criterion from the rates, or from the values before it.
+func (j *Judge) composed(c *criterion, values []Value, m *reading) Exact {
+	if c.shape == mixed {
+		return c.add(func(at int32) Exact { return values[at].Exact })
+	}
+	sit := j.situation(nil, m)
+	return c.rootOf(c.exactSquares(sit.exactRate))
+}
+
+// contained compares an exact value with the limits.
+func (j *Judge) contained(i int, e Exact) Outcome {
+	l := j.Limit(i)
+	switch {
+	case !l.Any():
+		return Unlimited
+	case l.Contains(e):
+		return Inside
+	}
+	return Outside
 }
 
 // enclose is criterion i as an enclosure around its fixed-point N.

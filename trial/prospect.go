@@ -31,6 +31,15 @@ const (
 	atomMost                  // greatest known rate of the criterion's days
 	atomLeast                 // least known rate
 	atomBox                   // 60 s/d
+
+	// Of criteria in weighted sums, and of standard deviations; only ever exact. See sumrows.go.
+	atomValueUnder   // N, or not above it
+	atomValueOver    // N, or not below it
+	atomSizeUnder    // the magnitude of the value, or not above it
+	atomSizeOver     // the magnitude of the value, or not below it
+	atomLeastSquares // least N of a standard deviation
+	atomLeastRoot    // least standard deviation, or not above it
+	atomCeiling      // greatest N within the box, or not below it
 )
 
 // situation is one movement as the solver sees it: whole or fixed-point rates, the exact ones
@@ -40,6 +49,7 @@ type situation struct {
 	rates     []Rate  // nil: r is exact, in thousandths
 	fixedBits uint    // r counts thousandths / 2^fixedBits
 	known     []uint64
+	box       bool // blank days stay within ±60 s/d
 }
 
 // situation copies a reading: the rare exact question must not make the buffers of the common
@@ -69,6 +79,7 @@ type rows struct {
 	days  []int32         // variable to blank day; -1 for a helper
 	atoms []atom
 	list  []row
+	loose bool // something asked is left out: a system that can be satisfied proves nothing
 }
 
 // row is slack = Σ vars + Σ atoms >= 0, or = 0.
@@ -91,7 +102,22 @@ func (j *Judge) rowsOf(crits []int, box bool, known []uint64) *rows {
 			s.greatest(c, int32(i))
 		case deviation:
 			s.deviation(c, int32(i))
+		case extent:
+			if c.hi != nil {
+				s.extent(c, s.row().atom(s, atomHigh, int32(i), 1))
+			}
+		case step:
+			if c.hi != nil {
+				s.steps(c, int32(i))
+			}
+		case root:
+			if c.hi != nil {
+				s.root(int32(i))
+			}
+		case mixed:
+			s.sum(c, int32(i))
 		}
+		s.loose = s.loose || c.shape != linear && c.shape != mixed && c.lo != nil && c.lo.Sign() > 0
 	}
 	if box {
 		for v, d := range s.days {
@@ -283,6 +309,9 @@ func (j *Judge) exactAtom(a atom, s *situation) *big.Rat {
 	}
 	if a.kind == atomBox {
 		return big.NewRat(unreachableBox, 1)
+	}
+	if a.kind > atomBox {
+		return j.compositeAtom(a, s)
 	}
 	c := &j.crits[a.at]
 	switch a.kind {

@@ -1,6 +1,9 @@
 package trial
 
-import "slices"
+import (
+	"math/big"
+	"slices"
+)
 
 // unreachable tells whether no values of the blank days within ±60 s/d bring criterion i, by
 // itself, inside its limits. Fixed-point rates are off by less than one unit each, which moves N
@@ -13,7 +16,7 @@ func (j *Judge) unreachable(i int, known []uint64, m *reading) bool {
 	if m.rates != nil {
 		b, err, box = c.fixed, c.lip, box<<j.fixedBits
 	}
-	if !c.overlap {
+	if c.shape.plain() && !c.overlap {
 		if !c.reach(m.r, known, b.lo-err, b.hiUp+err, box) {
 			return true
 		}
@@ -24,7 +27,22 @@ func (j *Judge) unreachable(i int, known []uint64, m *reading) bool {
 			return false
 		}
 	}
-	return !j.feasible([]int{i}, true, slices.Clone(known), j.situation(known, m))
+	return !j.reachable(i, slices.Clone(known), j.situation(known, m))
+}
+
+// reachable is the opposite by exact numbers. The values of N over the box are one interval, so
+// that it is enough that the upper limit can be kept (the solver says) and the lower one reached (a
+// corner says). Of a weighted sum in which a magnitude pulls the wrong way the solver knows only
+// what its addends can reach each by itself: there true may be too hopeful, false never wrong.
+func (j *Judge) reachable(i int, known []uint64, sit situation) bool {
+	c := &j.crits[i]
+	if !j.feasible([]int{i}, true, known, sit) {
+		return false
+	}
+	if c.lo == nil || c.lo.Sign() <= 0 || c.shape == linear || c.shape == mixed {
+		return true
+	}
+	return c.most(known, sit.exactRate, big.NewRat(unreachableBox, 1)).Cmp(c.lo) >= 0
 }
 
 // reach tells whether some real values of the blank days within ±box bring N into [lo, hi]. N is

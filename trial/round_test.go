@@ -149,7 +149,7 @@ func TestJudgeNeedsASoundProgramme(t *testing.T) {
 		"criteria[0].formula.days[0]: day 99 is not a day of the programme": func(p *trial.Programme) { p.Criteria[0].Formula.Days = []int{99} },
 		"criteria[0].formula.days: is empty":                                func(p *trial.Programme) { p.Criteria[0].Formula.Days = nil },
 		"criteria[1].formula.pairs[0]: day 0 is not a day of the programme": func(p *trial.Programme) { p.Criteria[1].Formula.Pairs = [][2]int{{0, 1}} },
-		"criteria[0].formula.kind: range: not built yet":                    func(p *trial.Programme) { p.Criteria[0].Formula.Kind = trial.RangeOf },
+		"criteria[0].formula.kind: median is not a kind of formula":         func(p *trial.Programme) { p.Criteria[0].Formula.Kind = "median" },
 		"categories: category 9 is not one of the programme's":              func(*trial.Programme) {},
 		"days: is empty": func(p *trial.Programme) { p.Days = nil },
 	} {

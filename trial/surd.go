@@ -1,0 +1,211 @@
+package trial
+
+import (
+	"math/big"
+	"slices"
+)
+
+// surd is a number of the form Σ coefficient · √(product of some radicands): what standard
+// deviations, sums of them and their margins are. coefs[set] belongs to the radicands whose bits
+// are in set; coefs[0] is the rational part. It is immutable.
+type surd struct {
+	radicands []*big.Rat // above zero
+	coefs     []*big.Rat // two to the power of the number of radicands
+}
+
+// cutPlaces is the number of decimals at which an irrational number is cut where only a rational
+// one can be given.
+const cutPlaces = 30
+
+// Root is the square root of r, exactly. It panics below zero: a caller's bug.
+func Root(r *big.Rat) Exact {
+	if r.Sign() < 0 {
+		panic("trial: root of a negative number")
+	}
+	num, den := new(big.Int).Sqrt(r.Num()), new(big.Int).Sqrt(r.Denom())
+	if square := new(big.Rat).SetFrac(new(big.Int).Mul(num, num), new(big.Int).Mul(den, den)); square.Cmp(r) == 0 {
+		return FromRat(new(big.Rat).SetFrac(num, den))
+	}
+	s := &surd{[]*big.Rat{new(big.Rat).Set(r)}, []*big.Rat{new(big.Rat), big.NewRat(1, 1)}}
+	return s.exact()
+}
+
+// exact wraps the number; a rational one loses its form as a surd.
+func (s *surd) exact() Exact {
+	if !slices.ContainsFunc(s.coefs[1:], func(c *big.Rat) bool { return c.Sign() != 0 }) {
+		return FromRat(s.coefs[0])
+	}
+	return Exact{den: 1, src: &source{surd: s}}
+}
+
+// surdOf is any number as a surd.
+func surdOf(e Exact) *surd {
+	if e.src != nil && e.src.surd != nil {
+		return e.src.surd
+	}
+	return &surd{coefs: []*big.Rat{e.Rat()}}
+}
+
+// irrational tells a number that is kept as a surd.
+func (e Exact) irrational() bool { return e.src != nil && e.src.surd != nil }
+
+// over writes the number with other radicands, its own among them.
+func (s *surd) over(radicands []*big.Rat) []*big.Rat {
+	out := make([]*big.Rat, 1<<len(radicands))
+	for set := range out {
+		out[set] = new(big.Rat)
+	}
+	for set, c := range s.coefs {
+		at := 0
+		for k, r := range s.radicands {
+			if set>>k&1 == 1 {
+				at |= 1 << slices.IndexFunc(radicands, func(x *big.Rat) bool { return x.Cmp(r) == 0 })
+			}
+		}
+		out[at] = c
+	}
+	return out
+}
+
+// common gives both numbers over all radicands of either.
+func common(s, t *surd) (radicands, a, b []*big.Rat) {
+	radicands = slices.Clone(s.radicands)
+	for _, r := range t.radicands {
+		if !slices.ContainsFunc(radicands, func(x *big.Rat) bool { return x.Cmp(r) == 0 }) {
+			radicands = append(radicands, r)
+		}
+	}
+	return radicands, s.over(radicands), t.over(radicands)
+}
+
+// plus is s + sign · t.
+func (s *surd) plus(t *surd, sign int64) *surd {
+	radicands, a, b := common(s, t)
+	sum := make([]*big.Rat, len(a))
+	for set := range a {
+		sum[set] = new(big.Rat).Mul(b[set], big.NewRat(sign, 1))
+		sum[set].Add(sum[set], a[set])
+	}
+	return &surd{radicands, sum}
+}
+
+// times is s · t.
+func (s *surd) times(t *surd) *surd {
+	radicands, a, b := common(s, t)
+	return &surd{radicands, product(radicands, a, b)}
+}
+
+// product multiplies coefficients over the same radicands.
+func product(radicands, a, b []*big.Rat) []*big.Rat {
+	out := make([]*big.Rat, len(a))
+	for set := range out {
+		out[set] = new(big.Rat)
+	}
+	for i, x := range a {
+		for k, y := range b {
+			if x.Sign() == 0 || y.Sign() == 0 {
+				continue
+			}
+			p := new(big.Rat).Mul(x, y)
+			out[i^k].Add(out[i^k], p.Mul(p, inside(radicands, i&k)))
+		}
+	}
+	return out
+}
+
+// inside is the product of the radicands of a set.
+func inside(radicands []*big.Rat, set int) *big.Rat {
+	p := big.NewRat(1, 1)
+	for k, r := range radicands {
+		if set>>k&1 == 1 {
+			p.Mul(p, r)
+		}
+	}
+	return p
+}
+
+// signOf is the sign of Σ coefs · roots, exactly: of u + v·√q the sign of u and v if they agree,
+// else u's sign times that of u² - v²·q, which has a radicand less.
+func signOf(radicands, coefs []*big.Rat) int {
+	if len(radicands) == 0 {
+		return coefs[0].Sign()
+	}
+	last := len(radicands) - 1
+	rest, q := radicands[:last], radicands[last]
+	u, v := coefs[:len(coefs)/2], coefs[len(coefs)/2:]
+	su, sv := signOf(rest, u), signOf(rest, v)
+	switch {
+	case sv == 0 || su == sv:
+		return su
+	case su == 0:
+		return sv
+	}
+	diff, vv := product(rest, u, u), product(rest, v, v)
+	for set := range diff {
+		diff[set].Sub(diff[set], vv[set].Mul(vv[set], q))
+	}
+	return su * signOf(rest, diff)
+}
+
+// floor is the greatest whole number not above s · 10^places.
+func (s *surd) floor(places int) *big.Int {
+	scale := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(places)), nil)
+	n := s.near(scale)
+	for s.above(n, scale) < 0 {
+		n.Sub(n, big.NewInt(1))
+	}
+	one := big.NewInt(1)
+	for next := new(big.Int).Add(n, one); s.above(next, scale) >= 0; next = new(big.Int).Add(n, one) {
+		n = next
+	}
+	return n
+}
+
+// near is s · scale as a whole number, off by little.
+func (s *surd) near(scale *big.Int) *big.Int {
+	const fine = 64 // bits below the scale
+	sum := new(big.Rat)
+	for set, c := range s.coefs {
+		r := inside(s.radicands, set)
+		whole := new(big.Int).Lsh(r.Num(), 2*fine+2*uint(scale.BitLen()))
+		root := new(big.Rat).SetInt(whole.Quo(whole, r.Denom()).Sqrt(whole))
+		sum.Add(sum, root.Mul(root, c))
+	}
+	sum.Mul(sum, new(big.Rat).SetInt(scale))
+	n := new(big.Int).Div(sum.Num(), sum.Denom())
+	return n.Rsh(n, fine+uint(scale.BitLen()))
+}
+
+// above is the sign of s - n/scale.
+func (s *surd) above(n, scale *big.Int) int {
+	t := s.plus(&surd{coefs: []*big.Rat{new(big.Rat).SetFrac(n, scale)}}, -1)
+	return signOf(t.radicands, t.coefs)
+}
+
+// rounded is s · 10^places rounded half to even.
+func (s *surd) rounded(places int) *big.Int {
+	n := s.floor(places)
+	scale := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(places)), nil)
+	twice := new(big.Int).Lsh(n, 1)
+	c := s.above(twice.Add(twice, big.NewInt(1)), scale.Lsh(scale, 1))
+	if c > 0 || c == 0 && n.Bit(0) == 1 {
+		n.Add(n, big.NewInt(1))
+	}
+	return n
+}
+
+// cut is the number cut to cutPlaces decimals, towards minus infinity.
+func (s *surd) cut() *big.Rat {
+	scale := new(big.Int).Exp(big.NewInt(10), big.NewInt(cutPlaces), nil)
+	return new(big.Rat).SetFrac(s.floor(cutPlaces), scale)
+}
+
+// bounds are rational numbers not above and not below e, equal to it unless it is irrational.
+func (e Exact) bounds() (under, over *big.Rat) {
+	under, over = e.Rat(), e.Rat()
+	if e.irrational() {
+		step := new(big.Int).Exp(big.NewInt(10), big.NewInt(cutPlaces), nil)
+		over.Add(over, new(big.Rat).SetFrac(big.NewInt(1), step))
+	}
+	return under, over
+}
