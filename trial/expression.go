@@ -22,21 +22,88 @@ func (p *Programme) Expression(f Formula) string {
 		return "max |Ri - " + meanOf(f.Days) + "|, i = " + dayRange(f.Days)
 	case PerDegree:
 		return fmt.Sprintf("(%s - %s)/%s", meanOf(f.Of), meanOf(f.From), p.degrees(f))
+	case RangeOf:
+		return "max Ri - min Ri, i = " + dayRange(f.Days)
+	case StandardDeviation:
+		n := len(f.Days)
+		if f.Divisor == "n-1" {
+			n--
+		}
+		return fmt.Sprintf("√(Σ (Ri - %s)²/%d), i = %s", meanOf(f.Days), n, dayRange(f.Days))
+	case PeriodRange:
+		return "max Sk - min Sk, " + sumsOf(f.Periods)
+	case GreatestStep:
+		return "max |Sk - Sk-1|, " + sumsOf(f.Periods)
 	}
-	return string(f.Kind)
+	return weighted(f)
+}
+
+// sumsOf names the sums Sk of periods: all of them, or the first two and the last where there are
+// more than three.
+func sumsOf(periods [][]int) string {
+	var list []string
+	for k, days := range periods {
+		if len(periods) > 3 && k == 2 {
+			list = append(list, "...")
+		}
+		if len(periods) > 3 && k >= 2 && k < len(periods)-1 {
+			continue
+		}
+		names := make([]string, len(days))
+		for i, d := range days {
+			names[i] = fmt.Sprintf("R%d", d)
+		}
+		if consecutive(days) && len(days) > 3 {
+			names = []string{names[0], "...", names[len(names)-1]}
+		}
+		list = append(list, fmt.Sprintf("S%d = %s", k+1, strings.Join(names, "+")))
+	}
+	return strings.Join(list, ", ")
+}
+
+// weighted writes a weighted sum in the symbols of its criteria.
+func weighted(f Formula) string {
+	var b strings.Builder
+	if f.Constant.Sign() != 0 {
+		b.WriteString(factor(f.Constant))
+	}
+	for _, t := range f.Terms {
+		sign, w := " + ", t.Weight
+		if w.Sign() < 0 {
+			sign, w = " - ", w.Neg()
+		}
+		if b.Len() == 0 {
+			sign = strings.TrimPrefix(strings.TrimSpace(sign), "+")
+		}
+		b.WriteString(sign)
+		if w.Cmp(Ratio(1, 1)) != 0 {
+			b.WriteString(factor(w) + "·")
+		}
+		if t.Absolute {
+			b.WriteString("|" + t.Symbol + "|")
+		} else {
+			b.WriteString(t.Symbol)
+		}
+	}
+	return b.String()
+}
+
+// factor writes a weight as a short decimal if it is one, else as a fraction in brackets.
+func factor(e Exact) string {
+	s := e.short()
+	if back, err := ParseExact(s); err == nil && back.Cmp(e) == 0 {
+		return s
+	}
+	return "(" + e.String() + ")"
 }
 
 // degrees is the nominal temperature difference between the days of a formula.
 func (p *Programme) degrees(f Formula) string {
-	of, okOf := p.Day(f.Of[0])
-	from, okFrom := p.Day(f.From[0])
-	if !okOf || !okFrom {
-		return "?"
+	d := p.meanTemperature(f.Of).Sub(p.meanTemperature(f.From))
+	if d.Sign() < 0 {
+		return "(" + factor(d) + ")"
 	}
-	if d := of.TemperatureC - from.TemperatureC; d < 0 {
-		return "(" + d.String() + ")"
-	}
-	return (of.TemperatureC - from.TemperatureC).String()
+	return factor(d)
 }
 
 func meanOf(days []int) string {

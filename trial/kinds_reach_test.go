@@ -92,7 +92,7 @@ func valley(x []float64, blanks []int, box float64, f func() float64) float64 {
 		return valley(x, blanks[1:], box, f)
 	}
 	lo, hi := -box, box
-	for hi-lo > 1e-9 {
+	for hi-lo > 1e-7 {
 		a, b := lo+(hi-lo)/3, hi-(hi-lo)/3
 		if at(a) < at(b) {
 			hi = b
@@ -141,7 +141,7 @@ func TestKindsUnreachableAgainstSearch(t *testing.T) {
 	t.Parallel()
 	rng := rand.New(rand.NewPCG(3159, 21))
 	counts := map[string]int{}
-	for range 700 {
+	for range 300 {
 		days := 3 + rng.IntN(4)
 		p := randomProgramme(rng, days, 5)
 		makeConvex(rng, p)
@@ -179,7 +179,7 @@ func TestKindsUnreachableAgainstSearch(t *testing.T) {
 	}
 	for _, k := range append(simpleKinds, trial.WeightedSum) {
 		for _, b := range []bool{true, false} {
-			if counts[fmt.Sprint(k, b)] < 15 {
+			if counts[fmt.Sprint(k, b)] < 5 {
 				t.Errorf("%s unreachable %v only %d times", k, b, counts[fmt.Sprint(k, b)])
 			}
 		}
@@ -223,7 +223,7 @@ func TestKindsCannotPassAgainstSearch(t *testing.T) {
 	t.Parallel()
 	rng := rand.New(rand.NewPCG(3159, 22))
 	counts := map[string]int{}
-	for n := range 500 {
+	for n := range 250 {
 		days := 3 + rng.IntN(3)
 		p := randomProgramme(rng, days, 4)
 		decidable := n%3 > 0
@@ -263,7 +263,7 @@ func TestKindsCannotPassAgainstSearch(t *testing.T) {
 		}
 	}
 	for _, c := range []string{"true true", "true false", "false true", "false false"} {
-		if counts[c] < 20 {
+		if counts[c] < 10 {
 			t.Errorf("too one-sided: %v", counts)
 		}
 	}
@@ -276,7 +276,7 @@ func nearest(rng *rand.Rand, x []float64, blanks []int, missed func() float64, c
 		return valley(x, blanks, 2000, missed)
 	}
 	best := math.Inf(1)
-	for range 3000 {
+	for range 1500 {
 		for _, d := range blanks {
 			x[d-1] = rng.NormFloat64() * []float64{3, 30, 300}[rng.IntN(3)]
 		}

@@ -1,0 +1,48 @@
+package trial_test
+
+import (
+	"math/big"
+	"testing"
+
+	"ratehouse/trial"
+)
+
+func root(p, q int64) trial.Exact { return trial.Root(big.NewRat(p, q)) }
+
+// Sums of square roots that cancel, meet a rational number, or miss it by little.
+func TestRootsAreExact(t *testing.T) {
+	t.Parallel()
+	nothing := root(2, 1).Add(root(8, 1)).Sub(root(18, 1))
+	if nothing.Sign() != 0 || nothing.Decimal(6) != "0.000000" {
+		t.Errorf("√2 + √8 - √18 is %s", nothing)
+	}
+	if got := root(2, 1).Times(root(8, 1)); got.Cmp(trial.Ratio(4, 1)) != 0 {
+		t.Errorf("√2 · √8 is %s", got)
+	}
+	if got := root(9, 4); got.String() != "3/2" {
+		t.Errorf("√(9/4) is %s", got)
+	}
+	// (√2 + √3)² - √24 = 5.
+	five := root(2, 1).Add(root(3, 1))
+	if five = five.Times(five).Sub(root(24, 1)); five.Cmp(trial.Ratio(5, 1)) != 0 {
+		t.Errorf("(√2 + √3)² - √24 is %s", five)
+	}
+	// 577/408 is a convergent of √2: above it by 2.1e-6; the next but one by less than 1e-30 after many.
+	p, q := big.NewInt(577), big.NewInt(408)
+	for range 6 {
+		p, q = new(big.Int).Add(new(big.Int).Mul(p, p), new(big.Int).Mul(big.NewInt(2), new(big.Int).Mul(q, q))),
+			new(big.Int).Mul(big.NewInt(2), new(big.Int).Mul(p, q))
+	}
+	near := trial.FromRat(new(big.Rat).SetFrac(p, q))
+	if root(2, 1).Cmp(near) != -1 || near.Cmp(root(2, 1)) != 1 || near.Sub(root(2, 1)).Sign() != 1 {
+		t.Error("a fraction just above √2 is not seen to be above it")
+	}
+	for places, want := range map[int]string{0: "1", 6: "1.414214", 30: "1.414213562373095048801688724210"} {
+		if got := root(2, 1).Decimal(places); got != want {
+			t.Errorf("√2 to %d places is %s", places, got)
+		}
+		if got := root(2, 1).Neg().Decimal(places); got != "-"+want {
+			t.Errorf("-√2 to %d places is %s", places, got)
+		}
+	}
+}
