@@ -138,6 +138,7 @@ var taken = map[string]*Error{
 	"holder_code_once":       {Kind: KindInvalid, Code: "holder_code_taken", Field: "code"},
 	"holder_type_pkey":       {Kind: KindInvalid, Code: "holder_type_code_taken", Field: "code"},
 	"programme_version_once": {Kind: KindInvalid, Code: "programme_version_taken", Field: "version"},
+	"programme_pkey":         {Kind: KindInvalid, Code: "programme_known", Field: "programme"},
 	"place_pkey":             {Kind: KindConflict, Code: "place_taken"},
 	"place_one_each":         {Kind: KindConflict, Code: "movement_placed_twice"},
 	"certificate_first_once": {Kind: KindConflict, Code: "released_already"},

@@ -307,22 +307,44 @@ func (l *Lab) programme(ctx context.Context, db rows.Reader, hash []byte) (*tria
 	return l.learn(r)
 }
 
-// AddProgramme adds a version of a programme; versions are never changed, only superseded.
+// AddProgramme adds a version of a programme; versions are never changed, only superseded. Batches
+// registered from then on take it, those registered before keep theirs.
 func (l *Lab) AddProgramme(ctx context.Context, a Actor, p *trial.Programme) error {
-	hash := sheet.Hash(p)
+	if err := usable(p); err != nil {
+		return err
+	}
+	hash, kept := sheet.Hash(p), sheet.Canonical(p)
 	err := l.do(ctx, a, verb{"add_programme", RightSetup}, func(w *work) error {
 		w.act.Body = map[string]any{"code": p.Code, "version": p.Version, "hash": fmt.Sprintf("%x", hash)}
 		rows.QueueProgramme(w.out, l.site, rows.Programme{Hash: hash[:], Code: p.Code, Version: p.Version, Title: p.Title,
-			Body: string(sheet.Canonical(p))}, w.act.ID)
+			Body: string(kept)}, w.act.ID)
 		return nil
 	})
-	if err == nil {
-		l.mu.Lock()
-		defer l.mu.Unlock()
-		l.programmes[hash] = p
+	if err != nil {
+		return err
 	}
+	// What the caller holds may change under his hands; what is stored does not.
+	_, err = l.learn(rows.Programme{Hash: hash[:], Code: p.Code, Version: p.Version, Body: string(kept)})
 	return err
 }
+
+// usable tells whether batches can be judged by a programme.
+func usable(p *trial.Programme) error {
+	if err := p.Check(); err != nil {
+		return faulty(err)
+	}
+	if p.Decision.Rule == trial.Guarded {
+		return invalid("programme", "guarded_not_built")
+	}
+	for _, c := range p.Categories {
+		if _, err := trial.NewJudge(p, c.Code); err != nil {
+			return faulty(err)
+		}
+	}
+	return nil
+}
+
+func faulty(err error) error { return invalid("programme", "programme_faulty", "fault", err.Error()) }
 
 // standardTypes are the holders a new laboratory starts with. Strips of five are common practice,
 // no source; the others are ours.

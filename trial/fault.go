@@ -36,6 +36,8 @@ var faultTexts = map[string]string{
 	"unknown_day":      "day %s is not a day of the programme",
 	"repeated":         "%s appears twice",
 	"empty":            "is empty",
+	"no_guard":         "goes with the guarded rule alone",
+	"bad_date":         "%s is not a date like 2026-12-01",
 	"too_few":          "has too few entries, at least %s are needed",
 	"too_many":         "has too many entries, at most %s are allowed",
 	"too_many_roots":   "rests on too many standard deviations, at most %s are allowed",
@@ -80,10 +82,29 @@ func (p *Programme) checkHead() *Fault {
 	if !isCode(p.Code) {
 		return fault("code", "bad_code", p.Code)
 	}
+	if t := p.TextChecked; t != nil {
+		for _, field := range []struct{ path, value string }{{"by", t.By}, {"edition", t.Edition}} {
+			if field.value == "" {
+				return fault("text_checked."+field.path, "missing")
+			}
+		}
+		if !isDate(t.Date) {
+			return fault("text_checked.date", "bad_date", t.Date)
+		}
+	}
 	if p.Measurand != AsPerformed && p.Measurand != AtNominal {
 		return fault("measurand", "unknown_value", string(p.Measurand))
 	}
 	return nil
+}
+
+// isDate tells a date written YYYY-MM-DD; that the month has that day nobody checks.
+func isDate(s string) bool {
+	if len(s) != 10 || s[4] != '-' || s[7] != '-' || strings.Trim(s[:4]+s[5:7]+s[8:], "0123456789") != "" {
+		return false
+	}
+	month, day := s[5:7], s[8:]
+	return month >= "01" && month <= "12" && day >= "01" && day <= "31"
 }
 
 // A programme may have a year and a day, that many criteria as fill a page or two, and pairs enough
@@ -136,8 +157,10 @@ func (p *Programme) checkRules() *Fault {
 	if p.Reading.SecondLook.Then != MedianOfThree {
 		return fault("reading.second_look.then", "unknown_value", p.Reading.SecondLook.Then)
 	}
-	if p.Reading.SecondLook.Agree < 0 {
-		return fault("reading.second_look.agree", "out_of_range", p.Reading.SecondLook.Agree.String(), "0", "60")
+	for _, r := range p.ranges() {
+		if r.value < r.least || r.value > r.most {
+			return fault(r.path, "out_of_range", r.value.String(), r.least.String(), r.most.String())
+		}
 	}
 	for i, group := range p.Recovery.Groups {
 		if f := p.checkDayList(fmt.Sprintf("recovery.groups[%d]", i), group); f != nil {
@@ -147,10 +170,45 @@ func (p *Programme) checkRules() *Fault {
 	if p.Recovery.MaxTotalDays != 0 && p.Recovery.MaxTotalDays < len(p.Days) {
 		return fault("recovery.max_total_days", "out_of_range", fmt.Sprint(p.Recovery.MaxTotalDays), fmt.Sprint(len(p.Days)), fmt.Sprint(2*mostDays))
 	}
-	if p.Decision.Rule != Simple && p.Decision.Rule != Guarded {
-		return fault("decision.rule", "unknown_value", string(p.Decision.Rule))
+	return p.checkDecision()
+}
+
+func (p *Programme) checkDecision() *Fault {
+	switch d := p.Decision; {
+	case d.Rule != Simple && d.Rule != Guarded:
+		return fault("decision.rule", "unknown_value", string(d.Rule))
+	case d.Guard.Sign() < 0:
+		return fault("decision.guard", "out_of_range", d.Guard.String(), "0", "10")
+	case d.Rule == Guarded && d.Guard.Sign() == 0:
+		return fault("decision.guard", "missing")
+	case d.Rule == Simple && d.Guard.Sign() != 0:
+		return fault("decision.guard", "no_guard")
 	}
 	return nil
+}
+
+// span is a number with its bounds, in thousandths.
+type span struct {
+	path               string
+	value, least, most Milli
+}
+
+// ranges are the plain numbers of the rules.
+func (p *Programme) ranges() []span {
+	const one, percent = 1000, 100_000
+	count := func(path string, n, most int) span { return span{path, Milli(n) * one, 0, Milli(most) * one} }
+	e := p.Environment
+	return []span{
+		count("conditioning.min_hours", p.Conditioning.MinHours, 1000),
+		{"reading.second_look.agree", p.Reading.SecondLook.Agree, 0, 60 * one},
+		{"environment.temperature_tolerance_c", e.TemperatureToleranceC, 0, percent},
+		count("environment.outside_minutes", e.OutsideMinutes, 1440),
+		{"environment.humidity_percent.min", e.HumidityMin, 0, percent},
+		{"environment.humidity_percent.max", e.HumidityMax, e.HumidityMin, percent},
+		count("recovery.max_repeats", p.Recovery.MaxRepeats, 100),
+		count("recovery.idle_days_allowed", p.Recovery.IdleDaysAllowed, mostDays),
+		count("recovery.max_total_days", p.Recovery.MaxTotalDays, 2*mostDays),
+	}
 }
 
 func (p *Programme) checkCategories() *Fault {

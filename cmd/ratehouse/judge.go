@@ -6,7 +6,9 @@ import (
 	"flag"
 	"fmt"
 	"io"
+	"io/fs"
 	"os"
+	"strings"
 
 	"ratehouse/trial"
 	"ratehouse/trial/sheet"
@@ -39,30 +41,53 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 	} else if err != nil {
 		return exitUsage
 	}
-	job := judgeJob{prog: trial.ISO3159(), states: *states, format: sheet.VerdictFormat(*format), stdout: stdout, stderr: stderr}
+	job := judgeJob{states: *states, format: sheet.VerdictFormat(*format), stdout: stdout, stderr: stderr}
 	switch {
 	case *uncertainty != "":
 		return job.fail("-uncertainty: not built yet")
-	case *code != job.prog.Code:
-		return job.fail("-programme with another programme than " + job.prog.Code + ": not built yet")
 	case job.format != sheet.CSV && job.format != sheet.JSON:
 		return job.fail(fmt.Sprintf("-format %q: csv and json are known", *format))
 	case flags.NArg() > 1:
 		return job.fail("one file at a time, and flags stand before it")
+	case *code == "-" && (flags.NArg() == 0 || flags.Arg(0) == "-"):
+		return job.fail("standard input cannot be both the programme and the rows")
+	}
+	var err error
+	if job.prog, err = programmeNamed(*code, stdin); err != nil {
+		return job.fail("-programme " + *code + ": " + err.Error())
+	}
+	switch {
+	case job.prog.Decision.Rule == trial.Guarded:
+		return job.fail("-programme " + *code + ": its guarded decision rule needs an uncertainty: not built yet")
 	case flags.NArg() == 1 && flags.Arg(0) != "-":
 		return job.file(flags.Arg(0))
 	}
 	return job.run(stdin)
 }
 
+// programmeNamed is a built-in programme by its code, else one from a file.
+func programmeNamed(name string, stdin io.Reader) (*trial.Programme, error) {
+	if p, ok := sheet.Builtin(name); ok {
+		return p, nil
+	}
+	p, err := readProgramme(name, stdin)
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil, fmt.Errorf("neither a built-in programme (%s) nor a file", strings.Join(sheet.BuiltinCodes(), ", "))
+	}
+	return p, err
+}
+
 // judgeFlags lists what judge takes.
 func judgeFlags(w io.Writer) {
 	fmt.Fprint(w, `Usage: ratehouse judge [flags] [FILE|-]
 
-Reads rows serial,category,d1..d15 (rates in s/d) and prints a verdict a row.
+Reads rows serial,category,d1..d15 (rates in s/d) and prints a verdict a row. With
+another programme there are as many columns d as it has days.
 
-  -programme CODE  test programme (default iso3159)
-  -states          rows are serial,category,s0..s15: states in s, one a day at 24 h
+  -programme P     test programme: the code of one built in, or a file (default
+                   iso3159; "ratehouse programme -h" lists them)
+  -states          rows are serial,category,s0..s15: states in s, one a programme
+                   day, as far apart as the programme reads (24 h)
   -format FORMAT   csv (default) or json, one object a line
   -uncertainty U   standard uncertainty of one state reading in s (not built yet)
 

@@ -1,6 +1,7 @@
 package sheet
 
 import (
+	"errors"
 	"fmt"
 	"io"
 	"math"
@@ -41,13 +42,21 @@ type Movements struct {
 	numbers    []int // day (or state) k by column; -1 for another column
 	values     []int64
 	have       []bool
-	careful    bool // read every row cell by cell: a test compares
-	HasCalibre bool // the file has a column calibre
+	perDay     int64 // readings a day: what a difference of states is multiplied by
+	careful    bool  // read every row cell by cell: a test compares
+	HasCalibre bool  // the file has a column calibre
 }
 
+// ErrInterval refuses states of a programme whose interval is no whole part of 24 h.
+var ErrInterval = errors.New("states of a programme that is not read a whole number of times in 24 h make no whole thousandths of s/d; give rates")
+
 // OpenMovements reads the header: serial, category, d1..dn, or with states s0..sn; calibre is
-// optional. The error is a *Refusal, or the reader's own.
+// optional. States are one a programme day, so far apart as the programme reads. The error is a
+// *Refusal, ErrInterval, or the reader's own.
 func OpenMovements(r io.Reader, p *trial.Programme, states bool) (*Movements, error) {
+	if states && trial.SecondsPerDay%p.Reading.IntervalS != 0 {
+		return nil, ErrInterval
+	}
 	first, letter := 1, "d"
 	if states {
 		first, letter = 0, "s"
@@ -64,6 +73,7 @@ func OpenMovements(r io.Reader, p *trial.Programme, states bool) (*Movements, er
 	m := &Movements{table: t, prog: p, states: states, seen: newSeen(),
 		serial: t.find("serial"), category: t.find("category"), calibre: t.find("calibre")}
 	m.HasCalibre = m.calibre >= 0
+	m.perDay = trial.SecondsPerDay / p.Reading.IntervalS
 	for _, name := range t.names {
 		k, err := strconv.Atoi(strings.TrimPrefix(name, letter))
 		if err != nil {
@@ -208,7 +218,7 @@ func (m *Movements) differences(fault **Refusal, place *int) {
 		if !m.have[k-1] || !m.have[k] {
 			continue
 		}
-		d := m.values[k] - m.values[k-1]
+		d := (m.values[k] - m.values[k-1]) * m.perDay
 		if d > mostRate || d < -mostRate {
 			m.worse(fault, place, m.table.find(fmt.Sprint("s", k)),
 				refuse(JumpBeyond, trial.Milli(m.values[k-1]).String(), trial.Milli(m.values[k]).String()))

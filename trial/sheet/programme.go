@@ -260,7 +260,7 @@ func dayLists(lists [][]int) []any {
 func ParseProgramme(data []byte) (*trial.Programme, error) {
 	dec := json.NewDecoder(strings.NewReader(string(data)))
 	dec.UseNumber()
-	tree, err := readTree(dec, "programme")
+	tree, err := readTree(dec, "programme", deepest)
 	if err != nil {
 		return nil, err
 	}
@@ -278,9 +278,15 @@ func ParseProgramme(data []byte) (*trial.Programme, error) {
 	return p, nil
 }
 
+// deepest is how many brackets may stand within each other; a programme file has six.
+const deepest = 20
+
 // readTree reads one JSON value into object, []any, string, number, bool or nil, and refuses
 // names that appear twice, which encoding/json would let pass.
-func readTree(dec *json.Decoder, path string) (any, error) {
+func readTree(dec *json.Decoder, path string, levels int) (any, error) {
+	if levels == 0 {
+		return nil, &trial.Fault{Path: path, Code: "not_json", Args: []string{"too many brackets within brackets"}}
+	}
 	token, err := dec.Token()
 	if err != nil {
 		return nil, &trial.Fault{Path: path, Code: "not_json", Args: []string{err.Error()}}
@@ -290,17 +296,17 @@ func readTree(dec *json.Decoder, path string) (any, error) {
 		return number(t), nil
 	case json.Delim:
 		if t == '[' {
-			return readList(dec, path)
+			return readList(dec, path, levels-1)
 		}
-		return readObject(dec, path)
+		return readObject(dec, path, levels-1)
 	}
 	return token, nil
 }
 
-func readList(dec *json.Decoder, path string) (any, error) {
+func readList(dec *json.Decoder, path string, levels int) (any, error) {
 	list := []any{}
 	for dec.More() {
-		x, err := readTree(dec, fmt.Sprintf("%s[%d]", path, len(list)))
+		x, err := readTree(dec, fmt.Sprintf("%s[%d]", path, len(list)), levels)
 		if err != nil {
 			return nil, err
 		}
@@ -309,7 +315,7 @@ func readList(dec *json.Decoder, path string) (any, error) {
 	return list, endOf(dec, path)
 }
 
-func readObject(dec *json.Decoder, path string) (any, error) {
+func readObject(dec *json.Decoder, path string, levels int) (any, error) {
 	tree := object{}
 	for dec.More() {
 		token, err := dec.Token()
@@ -321,7 +327,7 @@ func readObject(dec *json.Decoder, path string) (any, error) {
 		if _, twice := tree[key]; twice {
 			return nil, &trial.Fault{Path: at, Code: "repeated", Args: []string{Visible(key)}}
 		}
-		if tree[key], err = readTree(dec, at); err != nil {
+		if tree[key], err = readTree(dec, at, levels); err != nil {
 			return nil, err
 		}
 	}

@@ -123,7 +123,7 @@ func (m *Movements) quickDifferences() bool {
 		if !m.have[k-1] || !m.have[k] {
 			continue
 		}
-		d := m.values[k] - m.values[k-1]
+		d := (m.values[k] - m.values[k-1]) * m.perDay
 		if uint64(d+mostRate) > 2*mostRate {
 			return false
 		}
