@@ -2,6 +2,7 @@ package storetest
 
 import (
 	"fmt"
+	"os"
 	"sync"
 	"testing"
 	"time"
@@ -10,6 +11,8 @@ import (
 
 	"ratehouse/store"
 	"ratehouse/store/proof"
+	"ratehouse/trial"
+	"ratehouse/trial/sheet"
 )
 
 // Start is the instant at which every test laboratory begins: a Tuesday morning.
@@ -166,4 +169,24 @@ func (h *House) Run(t testing.TB, code string, rates [][]string) {
 			t.Fatal(err)
 		}
 	}
+}
+
+// ProgrammeFile adds the programme of a file, by the verb, and gives it.
+func (h *House) ProgrammeFile(t testing.TB, path string, change ...func(*trial.Programme)) *trial.Programme {
+	t.Helper()
+	data, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	p, err := sheet.ParseProgramme(data)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, c := range change {
+		c(p)
+	}
+	if err := h.AddProgramme(t.Context(), h.Manager, p); err != nil {
+		t.Fatal(err)
+	}
+	return p
 }
