@@ -95,6 +95,15 @@ func (e Exact) Rat() *big.Rat {
 	return e.src.judge.crits[e.at].exact(e.src.rates)
 }
 
+// Rational gives the number itself, an irrational one cut to 30 decimals: for sums over many
+// movements, whose exact form would have a root of each.
+func (e Exact) Rational() Exact {
+	if e.irrational() {
+		return FromRat(e.Rat())
+	}
+	return e
+}
+
 // Float gives the nearest float64, for drawing and statistics only: never for a verdict.
 func (e Exact) Float() float64 {
 	if e.small() {
@@ -108,8 +117,7 @@ func (e Exact) Float() float64 {
 // Cmp compares exactly: -1 if e < f, 0 if equal, +1 if e > f.
 func (e Exact) Cmp(f Exact) int {
 	if e.irrational() || f.irrational() {
-		d := surdOf(e).plus(surdOf(f), -1)
-		return signOf(d.radicands, d.coefs)
+		return compareSurds(surdOf(e), surdOf(f))
 	}
 	if !e.bounded() || !f.bounded() {
 		return e.Rat().Cmp(f.Rat())

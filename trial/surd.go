@@ -13,9 +13,14 @@ type surd struct {
 	coefs     []*big.Rat // two to the power of the number of radicands
 }
 
-// cutPlaces is the number of decimals at which an irrational number is cut where only a rational
-// one can be given.
-const cutPlaces = 30
+const (
+	// cutPlaces is the number of decimals at which an irrational number is cut where only a rational
+	// one can be given.
+	cutPlaces = 30
+	// mostRadicands bounds the exact form, which doubles with each: a programme's sums rest on six
+	// (mostRoots), and their differences on twelve at most. Beyond, numbers are cut.
+	mostRadicands = 12
+)
 
 // Root is the square root of r, exactly. It panics below zero: a caller's bug.
 func Root(r *big.Rat) Exact {
@@ -28,6 +33,25 @@ func Root(r *big.Rat) Exact {
 	}
 	s := &surd{[]*big.Rat{new(big.Rat).Set(r)}, []*big.Rat{new(big.Rat), big.NewRat(1, 1)}}
 	return s.exact()
+}
+
+// pure tells a single root, and gives its radicand.
+func (s *surd) pure() (radicand *big.Rat, ok bool) {
+	if len(s.radicands) != 1 || s.coefs[0].Sign() != 0 || !s.coefs[1].IsInt() || s.coefs[1].Num().Cmp(big.NewInt(1)) != 0 {
+		return nil, false
+	}
+	return s.radicands[0], true
+}
+
+// compareSurds compares; two single roots by their squares, as batches are sorted by them.
+func compareSurds(s, t *surd) int {
+	a, okA := s.pure()
+	b, okB := t.pure()
+	if okA && okB {
+		return a.Cmp(b)
+	}
+	d := s.plus(t, -1)
+	return signOf(d.radicands, d.coefs)
 }
 
 // exact wraps the number; a rational one loses its form as a surd.
@@ -74,6 +98,9 @@ func common(s, t *surd) (radicands, a, b []*big.Rat) {
 		if !slices.ContainsFunc(radicands, func(x *big.Rat) bool { return x.Cmp(r) == 0 }) {
 			radicands = append(radicands, r)
 		}
+	}
+	if len(radicands) > mostRadicands {
+		return nil, []*big.Rat{s.cut()}, []*big.Rat{t.cut()}
 	}
 	return radicands, s.over(radicands), t.over(radicands)
 }

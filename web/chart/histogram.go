@@ -31,7 +31,7 @@ type Distribution struct {
 }
 
 // DistributionOf gathers criterion i from the results of a batch judged by j; what is not known yet is
-// left out. The mean shown is the exact mean of the values.
+// left out. The mean shown is the exact mean of the values, of irrational ones cut to 30 decimals.
 func DistributionOf(p *words.Printer, j *trial.Judge, i int, results []trial.Result) Distribution {
 	crit, l := j.Programme().Criteria[i], j.Limit(i)
 	d := Distribution{Symbol: crit.Symbol, Title: p.Say(words.CriterionTitle(crit.Symbol, crit.Title)), Unit: p.Say(words.Unit(crit.Unit)),
@@ -43,7 +43,7 @@ func DistributionOf(p *words.Printer, j *trial.Judge, i int, results []trial.Res
 	for _, r := range results {
 		if v := r.Values[i]; v.Known {
 			d.Samples = append(d.Samples, Sample{v.Float(), v.Outcome == trial.Outside})
-			sum = sum.Add(v.Exact)
+			sum = sum.Add(v.Rational())
 		}
 	}
 	if n := len(d.Samples); n > 0 {

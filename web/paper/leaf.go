@@ -303,7 +303,7 @@ func (s *sheet) state() string {
 
 // magnitude tells whether a criterion has no sign by nature: its definition says so, a distance or the
 // greatest of distances.
-var magnitude = regexp.MustCompile(`^(max|range|standard_deviation|period_range|greatest_step)\b|^\(\|`)
+var magnitude = regexp.MustCompile(`^max\b|^√|^\(\|`)
 
 // unsigned tells whether figures of the criterion are printed without a plus.
 func unsigned(k proof.Criterion) bool { return magnitude.MatchString(k.Definition) || k.Min == "0" }

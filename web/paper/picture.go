@@ -3,6 +3,7 @@ package paper
 import (
 	"fmt"
 	"math"
+	"regexp"
 	"slices"
 
 	"ratehouse/store/proof"
@@ -63,10 +64,13 @@ func (s *sheet) picture(more float64) (v picture) {
 	return v
 }
 
-// meanRate is the criterion drawn beside the rates: the mean daily rate, known by its symbol.
+// meanForm is the definition of a mean of rates.
+var meanForm = regexp.MustCompile(`^(\(R[0-9+.R]+\)/[0-9]+|R[0-9]+)$`)
+
+// meanRate is the criterion drawn beside the rates: the first that is a mean of some.
 func (s *sheet) meanRate() *proof.Criterion {
 	for i, k := range s.Record.Criteria {
-		if k.Symbol == "M" && k.Value != "" && k.Unit == "s/d" {
+		if meanForm.MatchString(k.Definition) && k.Value != "" && k.Unit == "s/d" {
 			return &s.Record.Criteria[i]
 		}
 	}

@@ -91,6 +91,9 @@ func GaugeOf(k trial.Criterion, l trial.Limit, v trial.Value) Gauge {
 	case !g.Max:
 		hi = lo + scaleOf(lo)
 	}
+	if lo == hi { // one value alone is allowed
+		lo, hi = lo-scaleOf(lo), hi+scaleOf(hi)
+	}
 	at := func(x float64) float64 { return gaugeMin + (x-lo)/(hi-lo)*(gaugeMax-gaugeMin) }
 	if z := at(0); z > gaugeMin && z < gaugeMax {
 		g.Zero = tenth(z)

@@ -107,26 +107,24 @@ func PositionTerm(symbol string) Text {
 	return Raw(symbol)
 }
 
-// CriterionTitle is the term of one of the seven classic criteria in the reader's language. A
-// criterion with another symbol keeps the title its programme gives it.
+// CriterionTitle is the term of one of the seven classic criteria in the reader's language, known by
+// the symbol and title of the built-in programme together. What another programme means by the same
+// letter keeps the title that programme gives it.
 func CriterionTitle(symbol, title string) Text {
-	switch symbol {
-	case "M":
-		return MeanDailyRate
-	case "V":
-		return MeanVariation
-	case "Vmax":
-		return GreatestVariation
-	case "D":
-		return FlatAndHanging
-	case "P":
-		return GreatestDeviation
-	case "C":
-		return ByTemperature
-	case "R":
-		return Resumption
+	if t, ok := classic[[2]string{symbol, title}]; ok {
+		return t
 	}
 	return Raw(title)
+}
+
+var classic = map[[2]string]Text{
+	{"M", "mean daily rate"}:                  MeanDailyRate,
+	{"V", "mean variation"}:                   MeanVariation,
+	{"Vmax", "greatest variation"}:            GreatestVariation,
+	{"D", "vertical minus horizontal"}:        FlatAndHanging,
+	{"P", "greatest deviation from the mean"}: GreatestDeviation,
+	{"C", "rate variation with temperature"}:  ByTemperature,
+	{"R", "rate resumption"}:                  Resumption,
 }
 
 // RoleName is the word for a role ("technician").
