@@ -92,6 +92,24 @@ func TestPagesOnAnotherProgramme(t *testing.T) {
 	}
 }
 
+// A programme of 203 days without any limit: its pages open, and say no verdict.
+func TestPagesOnALongProgrammeWithoutLimits(t *testing.T) {
+	t.Parallel()
+	h, base := house(t)
+	h.ProgrammeFile(t, "../../trial/sheet/programmes/weekly.json")
+	b := h.Batch(t, "B1", 2, func(n *store.NewBatch) { n.Programme = "weekly" })
+	h.Clock.Set(b.Due(1))
+	must(t, h.OpenRound(t.Context(), h.Technician, "B1", 1))
+	h.MustSave(t, h.Technician, h.Rate("B1", 1, 1, "1.2"))
+	v := visit(t, base, "lead")
+	if text := v.page("/batches/B1").text(); !strings.Contains(text, "no limits") {
+		t.Errorf("no word of no limits in %q", text)
+	}
+	for _, path := range []string{"/batches", "/today", "/batches/B1?dist=T", "/batches/B1?sort=-T", "/batches/B1/movements/S-0001", "/batches/B1/rounds/1", "/batches/B1/release"} {
+		v.page(path)
+	}
+}
+
 // sortedBy tells the first pair of rows out of order by criterion k; unknown values stand last.
 func sortedBy(rows []doc, here judgedHere, k int) string {
 	var before *trial.Value
@@ -113,5 +131,5 @@ func sortedBy(rows []doc, here judgedHere, k int) string {
 func TestPagesOnAnotherProgrammeLook(t *testing.T) {
 	t.Parallel()
 	_, base := onHouse(t, 12)
-	look(t, base, "lead", [][2]string{{"house-batch", "/batches/B1"}, {"house-sheet", "/batches/B1/movements/S-0001"}, {"house-dist", "/batches/B1?dist=S"}})
+	look(t, base, "lead", [][2]string{{"house-batch", "/batches/B1?dist=S"}})
 }
