@@ -261,8 +261,19 @@ func TestKindsCannotPassAgainstSearch(t *testing.T) {
 		if cannot && gap < -1e-6 || decidable && !cannot && gap > 1e-6 {
 			t.Fatalf("%v, blank %v of %+v: cannot pass %v, missed by %g", rates, blanks, p.Criteria, cannot, gap)
 		}
+		if lo, hi, ok := j.Needed(rates, blanks[0]); ok && decidable {
+			counts["needed"]++
+			ends := func(v float64) float64 {
+				x[blanks[0]-1] = v
+				return valley(x, blanks[1:], 2000, missed)
+			}
+			at, to := lo.Float(), hi.Float()
+			if ends(at) > 1e-5 || ends(to) > 1e-5 || ends(at-0.01) < 1e-6 || ends(to+0.01) < 1e-6 {
+				t.Fatalf("%v, blank %v of %+v: day %d needed within %s to %s", rates, blanks, p.Criteria, blanks[0], lo, hi)
+			}
+		}
 	}
-	for _, c := range []string{"true true", "true false", "false true", "false false"} {
+	for _, c := range []string{"true true", "true false", "false true", "false false", "needed"} {
 		if counts[c] < 10 {
 			t.Errorf("too one-sided: %v", counts)
 		}
@@ -376,5 +387,32 @@ func TestKindsAtTheBrink(t *testing.T) {
 		if one(c.f, c.least, c.most).Rates(rates, &got); got.Values[0].Unreachable != c.want {
 			t.Errorf("%s: unreachable %v", name, got.Values[0].Unreachable)
 		}
+	}
+}
+
+// What CannotPass leaves out makes no interval of what is needed: it would promise too much.
+func TestNeededPromisesNothingLoose(t *testing.T) {
+	t.Parallel()
+	p := trial.ISO3159()
+	days := []int{1, 2, 3}
+	p.Criteria = []trial.Criterion{
+		{Symbol: "M", Formula: trial.Formula{Kind: trial.Mean, Days: days}, Limits: map[string]trial.Limit{"1": {HasMin: true, HasMax: true, Max: trial.Ratio(5, 1)}}},
+		{Symbol: "S", Formula: trial.Formula{Kind: trial.StandardDeviation, Days: days, Divisor: "n"}},
+	}
+	rates := []trial.Rate{trial.RateOf(0), trial.RateOf(1000)}
+	needed := func(limit trial.Limit) (string, bool) {
+		p.Criteria[1].Limits = map[string]trial.Limit{"1": limit}
+		j, err := trial.NewJudge(p, "1")
+		if err != nil {
+			t.Fatal(err)
+		}
+		lo, hi, ok := j.Needed(rates, 3)
+		return lo.String() + " to " + hi.String(), ok
+	}
+	if got, ok := needed(trial.Limit{}); !ok || got != "-1 to 14" {
+		t.Errorf("day 3 needed within %s, %v; the mean asks -1 to 14", got, ok)
+	}
+	if got, ok := needed(trial.Limit{HasMax: true, Max: trial.Ratio(1, 1)}); ok {
+		t.Errorf("day 3 needed within %s, though the deviation asks for more", got)
 	}
 }

@@ -41,7 +41,7 @@ func TestKindsAgainstTheirDefinitions(t *testing.T) {
 	t.Parallel()
 	rng := rand.New(rand.NewPCG(3159, 20))
 	counts := map[string]int{}
-	for n := range 800 {
+	for n := range 1000 {
 		days := 3 + rng.IntN(6)
 		p := randomProgramme(rng, days, 2+rng.IntN(5))
 		j, err := trial.NewJudge(p, "A")
