@@ -416,3 +416,31 @@ func TestNeededPromisesNothingLoose(t *testing.T) {
 		t.Errorf("day 3 needed within %s, though the deviation asks for more", got)
 	}
 }
+
+// A sum of a known √2 and a magnitude yet to come may just keep a lower limit between √2 and its 30
+// decimals; one a hair above √2 it cannot.
+func TestSumAtTheBrinkOfARoot(t *testing.T) {
+	t.Parallel()
+	p := trial.ISO3159()
+	p.Criteria = []trial.Criterion{
+		{Symbol: "S", Formula: trial.Formula{Kind: trial.StandardDeviation, Days: []int{1, 2}, Divisor: "n-1"}}, // of 0 and 2: √2
+		{Symbol: "M", Formula: trial.Formula{Kind: trial.Mean, Days: []int{3}}},
+		{Symbol: "Q", Formula: trial.Formula{Kind: trial.WeightedSum, Terms: []trial.Term{{Weight: trial.Ratio(1, 1), Symbol: "S"}, {Weight: trial.Ratio(-1, 1), Symbol: "M", Absolute: true}}}},
+	}
+	for text, want := range map[string]bool{"1.41421356237309504880168872420969": false, "1.414213562373095048801688724211": true} {
+		least, err := trial.ParseExact(text)
+		if err != nil {
+			t.Fatal(err)
+		}
+		p.Criteria[2].Limits = map[string]trial.Limit{"1": {HasMin: true, Min: least}}
+		j, err := trial.NewJudge(p, "1")
+		if err != nil {
+			t.Fatal(err)
+		}
+		rates := []trial.Rate{trial.RateOf(0), trial.RateOf(2000)}
+		var got trial.Result
+		if j.Rates(rates, &got); got.Values[2].Unreachable != want || j.CannotPass(rates) != want {
+			t.Errorf("at least %s: unreachable %v, cannot pass %v", text, got.Values[2].Unreachable, j.CannotPass(rates))
+		}
+	}
+}

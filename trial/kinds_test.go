@@ -131,3 +131,35 @@ func checkMargin(t *testing.T, value wide, l trial.Limit, got *trial.Result, i i
 		}
 	}
 }
+
+// Sums of periods exactly on a limit, and a seventh of a thousandth beyond, from rates in sevenths,
+// whose binary forms never end: only the exact numbers can tell.
+func TestPeriodsOnALimitBySevenths(t *testing.T) {
+	t.Parallel()
+	for _, kind := range []trial.Kind{trial.PeriodRange, trial.GreatestStep} {
+		p := trial.ISO3159()
+		p.Criteria = []trial.Criterion{{Symbol: "X", Formula: trial.Formula{Kind: kind, Periods: [][]int{{1, 2}, {3, 4}}},
+			Limits: map[string]trial.Limit{"1": {HasMax: true, Max: trial.Ratio(3, 1)}}}}
+		j, err := trial.NewJudge(p, "1")
+		if err != nil {
+			t.Fatal(err)
+		}
+		for a := int64(-2000); a < 2000; a += 37 {
+			// Sums 0 and 3 s/d, in sevenths of 0.008 s/d.
+			counts := []int64{a, -a, 3*a + 1, 2624 - 3*a}
+			for _, bend := range []int64{0, 1, -1} {
+				rates := make([]trial.Rate, 4)
+				for d, c := range counts {
+					if d == 3 {
+						c += bend
+					}
+					rates[d] = sevenths(c)
+				}
+				var got trial.Result
+				if j.Rates(rates, &got); (got.Values[0].Outcome == trial.Inside) != (bend <= 0) {
+					t.Fatalf("%s of %v is %s, %s", kind, rates, got.Values[0].Exact, got.Values[0].Outcome)
+				}
+			}
+		}
+	}
+}
