@@ -144,9 +144,9 @@ func TestPeriodsOnALimitBySevenths(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		for a := int64(-2000); a < 2000; a += 37 {
-			// Sums 0 and 3 s/d, in sevenths of 0.008 s/d.
-			counts := []int64{a, -a, 3*a + 1, 2624 - 3*a}
+		for a := int64(1); a < 1000; a += 13 {
+			// Sums of 1000 and 3625 counts, 3 s/d apart; cutting errs upwards where signs are mixed.
+			counts := []int64{a, 1000 - a, -3*a - 1, 3626 + 3*a}
 			for _, bend := range []int64{0, 1, -1} {
 				rates := make([]trial.Rate, 4)
 				for d, c := range counts {
