@@ -7,6 +7,8 @@ import (
 	"strings"
 	"testing"
 
+	"ratehouse/store"
+	"ratehouse/store/storetest"
 	"ratehouse/trial"
 	"ratehouse/trial/sheet"
 )
@@ -156,4 +158,17 @@ func TestJudgeRefusesProgrammes(t *testing.T) {
 			t.Errorf("%v: exit %d, %q, %s", c.args, code, stdout, stderr)
 		}
 	}
+}
+
+func TestProgrammeAdd(t *testing.T) {
+	t.Parallel()
+	h := storetest.New(t)
+	env := []string{"DATABASE_URL=" + h.DB.App}
+	runs(t, "", env, "programme", "add", houseFile).want(t, 0, "HOUSE6 version 1 added")
+	runs(t, "", env, "programme", "add", houseFile).want(t, 1, "is there already")
+	h.Batch(t, "B1", 1, func(n *store.NewBatch) { n.Programme, n.Category = "HOUSE6", "SMALL" })
+	other, _ := sheet.Builtin("contest")
+	other.Code, other.Version = "HOUSE6", "1"
+	runs(t, string(sheet.Canonical(other)), env, "programme", "add", "-").want(t, 1, "never changed")
+	runs(t, "", nil, "programme", "check", "-h").want(t, 0, "Usage")
 }
