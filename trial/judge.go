@@ -258,8 +258,10 @@ func (j *Judge) composed(c *criterion, values []Value, m *reading) Exact {
 	if c.shape == mixed {
 		return c.add(func(at int32) Exact { return values[at].Exact })
 	}
-	sit := j.situation(nil, m)
-	return c.rootOf(c.exactSquares(sit.exactRate))
+	if m.rates == nil {
+		return c.rootOf(new(big.Rat).SetInt64(c.wholeSquares(m.r)))
+	}
+	return c.rootOf(c.exactSquares(exactRates(slices.Clone(m.rates))))
 }
 
 // contained compares an exact value with the limits.

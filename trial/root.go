@@ -21,6 +21,16 @@ func (c *criterion) exactSquares(rate func(d int32) *big.Rat) *big.Rat {
 	return c.squares(sum, squares)
 }
 
+// wholeSquares is exactSquares for rates within rateBits: at most 366² · 2^44, below 2^62.
+func (c *criterion) wholeSquares(r []int64) int64 {
+	var sum, squares int64
+	for _, d := range c.days {
+		sum += r[d]
+		squares += r[d] * r[d]
+	}
+	return int64(len(c.days))*squares - sum*sum
+}
+
 // squares is n·Σ rate² - (Σ rate)².
 func (c *criterion) squares(sum, squares *big.Rat) *big.Rat {
 	n := new(big.Rat).SetInt64(int64(len(c.days)))

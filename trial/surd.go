@@ -43,12 +43,16 @@ func (s *surd) pure() (radicand *big.Rat, ok bool) {
 	return s.radicands[0], true
 }
 
-// compareSurds compares; two single roots by their squares, as batches are sorted by them.
+// compareSurds compares; two single roots, as batches are sorted by them, and a root with a limit,
+// by their squares.
 func compareSurds(s, t *surd) int {
 	a, okA := s.pure()
 	b, okB := t.pure()
-	if okA && okB {
+	switch {
+	case okA && okB:
 		return a.Cmp(b)
+	case okA && len(t.radicands) == 0 && t.coefs[0].Sign() >= 0:
+		return a.Cmp(new(big.Rat).Mul(t.coefs[0], t.coefs[0]))
 	}
 	d := s.plus(t, -1)
 	return signOf(d.radicands, d.coefs)
@@ -178,6 +182,7 @@ func signOf(radicands, coefs []*big.Rat) int {
 func (s *surd) floor(places int) *big.Int {
 	scale := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(places)), nil)
 	n := s.near(scale)
+	n.Rsh(n, fine)
 	for s.above(n, scale) < 0 {
 		n.Sub(n, big.NewInt(1))
 	}
@@ -188,19 +193,34 @@ func (s *surd) floor(places int) *big.Int {
 	return n
 }
 
-// near is s · scale as a whole number, off by little.
+// fine is how many bits near looks beyond the unit.
+const fine = 64
+
+// near is s · scale · 2^fine, off by less than one and the sum of all coefficients' magnitudes.
 func (s *surd) near(scale *big.Int) *big.Int {
-	const fine = 64 // bits below the scale
+	shift := fine + uint(scale.BitLen())
 	sum := new(big.Rat)
 	for set, c := range s.coefs {
+		if c.Sign() == 0 {
+			continue
+		}
 		r := inside(s.radicands, set)
-		whole := new(big.Int).Lsh(r.Num(), 2*fine+2*uint(scale.BitLen()))
+		whole := new(big.Int).Lsh(r.Num(), 2*shift)
 		root := new(big.Rat).SetInt(whole.Quo(whole, r.Denom()).Sqrt(whole))
 		sum.Add(sum, root.Mul(root, c))
 	}
-	sum.Mul(sum, new(big.Rat).SetInt(scale))
-	n := new(big.Int).Div(sum.Num(), sum.Denom())
-	return n.Rsh(n, fine+uint(scale.BitLen()))
+	n := new(big.Int).Mul(sum.Num(), scale)
+	n.Quo(n, sum.Denom())
+	return n.Rsh(n, uint(scale.BitLen()))
+}
+
+// tame tells coefficients whose magnitudes sum up to less than 2^31.
+func (s *surd) tame() bool {
+	sum := new(big.Rat)
+	for _, c := range s.coefs {
+		sum.Add(sum, new(big.Rat).Abs(c))
+	}
+	return sum.Cmp(big.NewRat(1<<31, 1)) < 0
 }
 
 // above is the sign of s - n/scale.
@@ -209,10 +229,19 @@ func (s *surd) above(n, scale *big.Int) int {
 	return signOf(t.radicands, t.coefs)
 }
 
-// rounded is s · 10^places rounded half to even.
+// rounded is s · 10^places rounded half to even. Where the number is not within 2^-32 of the middle
+// between two whole ones, knowing it nearly is enough.
 func (s *surd) rounded(places int) *big.Int {
-	n := s.floor(places)
 	scale := new(big.Int).Exp(big.NewInt(10), big.NewInt(int64(places)), nil)
+	if s.tame() {
+		n := s.near(scale)
+		n.Add(n, new(big.Int).Lsh(big.NewInt(1), fine-1))
+		rest := new(big.Int).And(n, new(big.Int).SetUint64(1<<fine-1)).Uint64()
+		if rest > 1<<32 && rest < 1<<fine-1<<32 {
+			return n.Rsh(n, fine)
+		}
+	}
+	n := s.floor(places)
 	twice := new(big.Int).Lsh(n, 1)
 	c := s.above(twice.Add(twice, big.NewInt(1)), scale.Lsh(scale, 1))
 	if c > 0 || c == 0 && n.Bit(0) == 1 {
