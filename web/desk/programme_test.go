@@ -90,6 +90,11 @@ func TestPagesOnAnotherProgramme(t *testing.T) {
 	for _, m := range here.sheet.Movements {
 		v.page("/batches/B1/movements/" + m.Serial)
 	}
+	for k := range here.sheet.Batch.Steps {
+		v.page(fmt.Sprintf("/batches/B1/rounds/%d", k))
+	}
+	v.page("/batches/new")
+	v.page("/batches/B1/release")
 }
 
 // A programme of 203 days without any limit: its pages open, and say no verdict.
