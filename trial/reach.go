@@ -35,14 +35,17 @@ func (j *Judge) unreachable(i int, known []uint64, m *reading) bool {
 // corner says). Of a weighted sum in which a magnitude pulls the wrong way the solver knows only
 // what its addends can reach each by itself: there true may be too hopeful, false never wrong.
 func (j *Judge) reachable(i int, known []uint64, sit situation) bool {
-	c := &j.crits[i]
-	if !j.feasible([]int{i}, true, known, sit) {
+	c, box := &j.crits[i], big.NewRat(unreachableBox, 1)
+	switch {
+	case c.shape == root && c.hi != nil && c.leastSquares(known, sit.exactRate, box).Cmp(c.hi) > 0:
+		return false
+	case c.shape != root && !j.feasible([]int{i}, true, known, sit):
 		return false
 	}
 	if c.lo == nil || c.lo.Sign() <= 0 || c.shape == linear || c.shape == mixed {
 		return true
 	}
-	return c.most(known, sit.exactRate, big.NewRat(unreachableBox, 1)).Cmp(c.lo) >= 0
+	return c.most(known, sit.exactRate, box).Cmp(c.lo) >= 0
 }
 
 // reach tells whether some real values of the blank days within ±box bring N into [lo, hi]. N is
