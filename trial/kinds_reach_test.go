@@ -217,6 +217,61 @@ func makeConvex(rng *rand.Rand, p *trial.Programme) {
 	}
 }
 
+// A convex sum that must be large, and its negative that must be small, against the corners.
+func TestSumsThatACornerDecides(t *testing.T) {
+	t.Parallel()
+	rng := rand.New(rand.NewPCG(3159, 23))
+	counts := map[bool]int{}
+	for range 300 {
+		days := 3 + rng.IntN(4)
+		p := randomProgramme(rng, days, 5)
+		makeConvex(rng, p)
+		for i := range p.Criteria { // standard deviations may stay in these sums
+			if f := &p.Criteria[i].Formula; f.Kind == trial.WeightedSum && rng.IntN(3) == 0 {
+				p.Criteria[0].Formula = trial.Formula{Kind: trial.StandardDeviation, Days: []int{1, 2, 3}, Divisor: "n"}
+				f.Terms = append(f.Terms, trial.Term{Weight: trial.Ratio(3, 2), Symbol: "K0"})
+			}
+		}
+		rates, x, blanks := blankSome(rng, days)
+		for i := range p.Criteria {
+			c := &p.Criteria[i]
+			if c.Formula.Kind != trial.WeightedSum {
+				continue
+			}
+			most := peak(x, blanks, 60, func() float64 { return flat(p, *c, x) })
+			limit := int64(most) + rng.Int64N(41) - 20
+			c.Limits["A"] = trial.Limit{HasMin: true, Min: trial.Ratio(limit, 1)}
+			if rng.IntN(2) == 0 {
+				f := &c.Formula
+				f.Constant = f.Constant.Neg()
+				for k := range f.Terms {
+					f.Terms[k].Weight = f.Terms[k].Weight.Neg()
+				}
+				c.Limits["A"] = trial.Limit{HasMax: true, Max: trial.Ratio(-limit, 1)}
+			}
+			j, err := trial.NewJudge(p, "A")
+			if err != nil {
+				t.Fatal(err)
+			}
+			var got trial.Result
+			j.Rates(rates, &got)
+			v := got.Values[i]
+			want := float64(limit) > most
+			if v.Known || math.Abs(float64(limit)-most) < 1e-6 {
+				break
+			}
+			counts[want]++
+			if v.Unreachable != want {
+				t.Fatalf("%v, blank %v: %+v is unreachable %v; the most it can be is %g, of %d", rates, blanks, c.Formula, v.Unreachable, most, limit)
+			}
+			break // a later sum may rest on this one
+		}
+	}
+	if counts[true] < 20 || counts[false] < 20 {
+		t.Errorf("too one-sided: %v", counts)
+	}
+}
+
 // CannotPass for programmes of all kinds: never with a filling that passes, and always where the
 // limits are flat and searching finds them missed together.
 func TestKindsCannotPassAgainstSearch(t *testing.T) {

@@ -32,8 +32,9 @@ func (j *Judge) unreachable(i int, known []uint64, m *reading) bool {
 
 // reachable is the opposite by exact numbers. The values of N over the box are one interval, so
 // that it is enough that the upper limit can be kept (the solver says) and the lower one reached (a
-// corner says). Of a weighted sum in which a magnitude pulls the wrong way the solver knows only
-// what its addends can reach each by itself: there true may be too hopeful, false never wrong.
+// corner says). Of a weighted sum whose magnitudes pull both ways, or with a standard deviation that
+// pulls towards the limit, only what the addends can reach each by itself is known, and of one with
+// more than ten blank days corners are not tried: there true may be too hopeful, false never wrong.
 func (j *Judge) reachable(i int, known []uint64, sit situation) bool {
 	c, box := &j.crits[i], big.NewRat(unreachableBox, 1)
 	switch {
@@ -41,8 +42,10 @@ func (j *Judge) reachable(i int, known []uint64, sit situation) bool {
 		return false
 	case c.shape != root && !j.feasible([]int{i}, true, known, sit):
 		return false
+	case c.shape == mixed:
+		return j.cornered(i, known, sit)
 	}
-	if c.lo == nil || c.lo.Sign() <= 0 || c.shape == linear || c.shape == mixed {
+	if c.lo == nil || c.lo.Sign() <= 0 || c.shape == linear {
 		return true
 	}
 	return c.most(known, sit.exactRate, box).Cmp(c.lo) >= 0
