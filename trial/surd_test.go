@@ -45,4 +45,12 @@ func TestRootsAreExact(t *testing.T) {
 			t.Errorf("-√2 to %d places is %s", places, got)
 		}
 	}
+	// A hair from the middle between two decimals: the square of 1.0000005, and 1e-40 beside it.
+	middle, hair := big.NewRat(10_000_005, 10_000_000), new(big.Rat).SetFrac(big.NewInt(1), new(big.Int).Exp(big.NewInt(10), big.NewInt(40), nil))
+	square := new(big.Rat).Mul(middle, middle)
+	for want, r := range map[string]*big.Rat{"1.000001": new(big.Rat).Add(square, hair), "1.000000": new(big.Rat).Sub(square, hair)} {
+		if got := trial.Root(r).Decimal(6); got != want {
+			t.Errorf("a hair beside 1.0000005 rounds to %s, want %s", got, want)
+		}
+	}
 }
