@@ -159,6 +159,14 @@ const (
 //	period_range        Periods     greatest minus least sum
 //	greatest_step       Periods     greatest |sum - sum of the period before|
 //	weighted_sum        Constant, Terms   constant + Σ weight · criterion
+//
+// Rates are in s/d, sums of days in s, per_degree in s/d per °C; variations, deviations, ranges and
+// steps are magnitudes, the others keep their sign. A criterion is undecided unless all its days are
+// read, a weighted sum unless all its criteria are known. Values are exact, standard deviations as
+// roots; decimals are rounded once, half to even. Sources: the first six kinds from published
+// descriptions of ISO 3159; sums of periods from memory of the trials of marine chronometers; range
+// and standard deviation from a watch lexicon on rate tests; weighted sums from published scores of
+// observatory contests.
 type Formula struct {
 	Kind     Kind
 	Days     []int
