@@ -23,16 +23,20 @@ const (
 	Common      ShiftCode = "common"
 )
 
-// shiftSigma is by how many standard uncertainties a round must be off to be named (B2).
-const shiftSigma = 3
+// shiftSigma is by how many standard uncertainties a round must be off to be named, clockFewest from
+// how many values on (B2).
+const (
+	shiftSigma  = 3
+	clockFewest = 20
+)
 
-// Clock looks for a shift common to the values of a round read so far, from five on; nil is none.
+// Clock looks for a shift common to the values of a round read so far, from twenty on; nil is none.
 // The median of the residuals is tested against its own uncertainty and against what whole lots of a
 // calibre differ by on such a day: little on a day like the one before, more after a change.
 func (f *Forecast) Clock(r Round, places []Place) *Shift {
 	plain := f.plain(r, places)
 	off := f.residuals(r, places, plain)
-	if len(off) < fewest {
+	if len(off) < clockFewest {
 		return nil
 	}
 	middle, spread := medianAndSpread(off)

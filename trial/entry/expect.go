@@ -160,26 +160,31 @@ func median(x []float64) float64 {
 	return (x[(n-1)/2] + x[n/2]) / 2
 }
 
-// Spread of lots of one calibre about its mean, s/d: on the first day; after a change of position; for
-// each degree of a change of temperature; on a day like the one before. Common practice, no source.
+// Spread of lots of one calibre about its mean, s/d: on the first day; in a position not met yet; for
+// each degree to a temperature not met yet, half of what single movements spread by (practice.md E15);
+// under conditions met before. Common practice, no source.
 const (
 	lotFirst  = 2.0
 	lotPlace  = 0.6
-	lotDegree = 0.06
-	lotSame   = 0.1
+	lotDegree = 0.1
+	lotSame   = 0.05
 )
 
-// lotSpread is by how much a whole lot may differ from the history on a day, given the day before.
+// lotSpread is by how much a whole lot may differ on a day from what its movements' past lets expect.
 func (f *Forecast) lotSpread(day int) float64 {
 	if day == 1 {
 		return lotFirst
 	}
-	a, b := f.days[day-2], f.days[day-1]
-	s := lotSame
-	if a.Position != b.Position {
-		s += lotPlace
+	b, place, degrees := f.days[day-1], true, math.Inf(1)
+	for _, a := range f.days[:day-1] {
+		place = place && a.Position != b.Position
+		degrees = min(degrees, math.Abs(b.TemperatureC.Exact().Float()-a.TemperatureC.Exact().Float()))
 	}
-	return s + lotDegree*math.Abs(b.TemperatureC.Exact().Float()-a.TemperatureC.Exact().Float())
+	s := math.Hypot(lotSame, lotDegree*degrees)
+	if place {
+		s = math.Hypot(s, lotPlace)
+	}
+	return s
 }
 
 // neighbours finds the next places before and after that hold a movement.

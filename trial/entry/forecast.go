@@ -18,7 +18,8 @@ import (
 type Forecast struct {
 	days   []trial.Day
 	normal trial.Normal
-	tails  []tail // by how many days speak for the movement's own scale
+	doubt  float64 // factor of all variances: a short history has seen few lots
+	tails  []tail  // by how many days speak for the movement's own scale
 	mu     sync.Mutex
 	given  map[string]*trial.Conditional // by which days are known
 }
@@ -29,6 +30,7 @@ const (
 	freedom     = 4     // degrees of freedom of a movement of which nothing is known
 	askTail     = 0.006 // share of right values that the model itself would ask again
 	baseWeight  = 30    // movements of history that weigh as much as knowing nothing
+	fewLots     = 100   // movements of history at which variances are still taken half as large again
 	baseMean    = 4.0   // s/d: spread of movements nothing is known of,
 	basePlace   = 3.0   // of one position against another,
 	baseThermal = 0.4   // s/d per °C,
@@ -46,6 +48,7 @@ func NewForecast(p *trial.Programme, history *trial.Prior) (*Forecast, error) {
 		return nil, trial.ErrPriorDays
 	}
 	f := &Forecast{days: p.Days, normal: history.Normal(base(p.Days), baseWeight), given: map[string]*trial.Conditional{}}
+	f.doubt = 1 + fewLots/(fewLots+float64(history.N()))
 	for m := range len(p.Days) + 1 {
 		f.tails = append(f.tails, tailOf(freedom+m))
 	}
@@ -135,7 +138,7 @@ func (f *Forecast) conditional(days []int) *trial.Conditional {
 // multivariate t; from memory). share is by how much they speak for the day in question at all; 1: fully.
 func (f *Forecast) widen(k known, c *trial.Conditional, share float64) (factor float64, own *tail) {
 	m := share * float64(len(k.x))
-	return (freedom - 2 + share*c.Distance(k.x)) / (freedom + m), &f.tails[int(math.Round(m))]
+	return f.doubt * (freedom - 2 + share*c.Distance(k.x)) / (freedom + m), &f.tails[int(math.Round(m))]
 }
 
 // rate forecasts one day: centre and scale, s/d, of a t distribution.

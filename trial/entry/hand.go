@@ -27,17 +27,22 @@ func unwrapped(state int64) Unwrapped {
 // the nearest first; all thousandths of a second.
 func Candidates(hand, pip int64, expected trial.State, reach int64) (out []Unwrapped) {
 	first := nearest(hand-pip, int64(expected), Minute60)
-	for n := int64(0); ; n++ {
-		found := false
-		for _, s := range []int64{first - n*Minute60, first + n*Minute60} {
-			if magnitude(s-int64(expected)) <= reach && (n > 0 || !found) {
-				out, found = append(out, unwrapped(s)), true
-			}
-		}
-		if !found {
-			return out
+	add := func(state int64) {
+		if magnitude(state-int64(expected)) <= reach {
+			out = append(out, unwrapped(state))
 		}
 	}
+	add(first)
+	for n := int64(Minute60); n <= reach+Minute60; n += Minute60 {
+		if first >= int64(expected) { // then the one below is nearer
+			add(first - n)
+			add(first + n)
+		} else {
+			add(first + n)
+			add(first - n)
+		}
+	}
+	return out
 }
 
 // CheckHand unwraps a reading of the seconds hand about its expectation and checks it. A state
@@ -82,10 +87,10 @@ type AnchorResult string
 // What an anchor shows. Two seconds readings half an hour apart are good to some 10 s/d, well within
 // the 20 s/d that decide between minutes; hours and minutes must agree to half a minute a day.
 const (
-	NoAnchor   AnchorResult = "no_anchor"
-	Anchored   AnchorResult = "anchored"
-	OffQuick   AnchorResult = "off_quick_check"
-	OffMinutes AnchorResult = "off_minute_hand"
+	NoAnchor    AnchorResult = "no_anchor"
+	AnchorHolds AnchorResult = "anchored"
+	OffQuick    AnchorResult = "off_quick_check"
+	OffMinutes  AnchorResult = "off_minute_hand"
 )
 
 // Anchored tests a series read by the seconds hand: its first rate, and its unwrapped states at the
@@ -97,13 +102,13 @@ func (a Anchor) Anchored(first trial.Rate, begin, end trial.State, days int64) A
 		if bound := trial.Ratio(nearRate, 1); d.Cmp(bound) > 0 || d.Neg().Cmp(bound) > 0 {
 			return OffQuick
 		}
-		result = Anchored
+		result = AnchorHolds
 	}
 	if a.First != nil && a.Last != nil && days > 0 {
 		if magnitude(int64(*a.Last-*a.First)-int64(end-begin)) >= days*Minute60/2 {
 			return OffMinutes
 		}
-		result = Anchored
+		result = AnchorHolds
 	}
 	return result
 }
