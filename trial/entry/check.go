@@ -15,8 +15,17 @@ func Check(e *Expectation, value int64) *Suspect {
 	if !e.Known || magnitude(value-e.Centre) <= e.Band {
 		return nil
 	}
-	t := &tally{e: e, typed: value, best: Suspect{Slip: Odd}}
-	t.run(value)
+	return e.suspect(value, value, 0)
+}
+
+// suspect names what a value most likely is that is asked again.
+func (e *Expectation) suspect(value, typed, pip int64) *Suspect {
+	t := &tally{e: e, typed: typed, pip: pip, best: Suspect{Slip: Odd}}
+	t.count(Odd, 0, value, (perReadings-e.slipping())*e.weight(value))
+	for _, s := range e.Slips {
+		t.try(s, value)
+	}
+	t.best.Permille = 1000 * t.most / max(1, t.total)
 	return &t.best
 }
 
@@ -48,14 +57,6 @@ type tally struct {
 	typed, pip  int64 // as typed: OfHand the hand, whose turns are not in it
 	best        Suspect
 	most, total int64
-}
-
-func (t *tally) run(value int64) {
-	t.count(Odd, 0, value, (perReadings-t.e.slipping())*t.e.weight(value))
-	for _, s := range t.e.Slips {
-		t.try(s, value)
-	}
-	t.best.Permille = 1000 * t.most / max(1, t.total)
 }
 
 func (t *tally) count(s Slip, by, instead, weight int64) {

@@ -49,10 +49,11 @@ func (f *Forecast) Clock(r Round, places []Place) *Shift {
 	return s
 }
 
-// shiftCode names the first kind of shift that lies within reach of the median.
+// shiftCode names the first kind of shift that the median is close to: within reach or a twentieth of
+// the unit, for readers have small offsets besides.
 func shiftCode(off, reach int64) ShiftCode {
 	near := func(unit int64) bool {
-		return magnitude(off) > unit/2 && magnitude(Fold(off, unit)) <= min(reach, unit/4)
+		return magnitude(off) > unit/2 && magnitude(Fold(off, unit)) <= min(max(reach, unit/20), unit/4)
 	}
 	switch {
 	case near(3_600_000):

@@ -58,19 +58,23 @@ func CheckHand(e *Expectation, hand, pip int64) (Unwrapped, *Suspect) {
 	if off <= min(e.Band, e.Near) {
 		return u, nil
 	}
-	t := &tally{e: e, pip: pip, typed: hand, best: Suspect{Slip: Odd}}
-	t.run(int64(u.State))
-	if off > e.Near && t.best.Slip == Odd {
-		t.best.Slip = OtherTurn
+	s := e.suspect(int64(u.State), hand, pip)
+	if off > e.Near && s.Slip == Odd {
+		s.Slip = OtherTurn
 	}
-	return u, &t.best
+	return u, s
 }
 
-// Recount takes another choice of turns at step from to all later states of a movement at once (E2).
+// Recount takes another choice of turns at step from to all later states of a movement at once (E2):
+// up to the next step at which the hands were set, where a count of its own begins.
 func Recount(cells []trial.Cell, from int, turns int64) {
 	for k := from; k < len(cells); k++ {
-		cells[k].Found += trial.State(turns * Minute60)
-		cells[k].Left += trial.State(turns * Minute60)
+		if cells[k].HasFound {
+			cells[k].Found += trial.State(turns * Minute60)
+		}
+		if cells[k].HasLeft {
+			return
+		}
 	}
 }
 

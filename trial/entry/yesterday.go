@@ -19,7 +19,8 @@ type Late struct {
 }
 
 // Yesterday tests the state between day and the day after by both their rates; seconds are the two
-// intervals. nil: nothing to say, or one of the rates is not there.
+// intervals. nil: nothing to say, or one of the rates is not there. Where the hands were set at that
+// reading its error is in one rate alone, and this is not to be asked.
 //
 // Both rates are forecast from the days before; the error is the least squares estimate along
 // (+1, -1) under their joint covariance.
