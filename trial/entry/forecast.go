@@ -28,7 +28,7 @@ type Forecast struct {
 // judged on the second (trial/simulate/rival).
 const (
 	freedom     = 4     // degrees of freedom of a movement of which nothing is known
-	askTail     = 0.006 // share of right values that the model itself would ask again
+	askTail     = 0.005 // share of right values that the model itself would ask again
 	baseWeight  = 30    // movements of history that weigh as much as knowing nothing
 	fewLots     = 100   // movements of history at which variances are still taken half as large again
 	baseMean    = 4.0   // s/d: spread of movements nothing is known of,

@@ -7,7 +7,7 @@ import (
 )
 
 // lateTail is the share of right states that are named a round later. Common practice, no source.
-const lateTail = 0.005
+const lateTail = 0.0035
 
 // Late is a state of the round before that looks wrong once the next one is there (practice.md E7):
 // its error went into two rates with opposite sign, as no movement runs. It is a remark, never a

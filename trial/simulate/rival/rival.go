@@ -33,6 +33,7 @@ type movement struct {
 	isochronism    float64 // s/d per 10° of amplitude
 	wound, spent   float64 // amplitude dial up at full wind and a day later
 	upright, down  float64 // what it loses in vertical positions; dial down against dial up
+	ends           float64 // s/d dial down against dial up, from the ends of its pivots
 	slope, curve   float64 // of spring and balance, s/d per °C, per °C²
 	restless, calm float64 // scale of the day's own noise; of the wander that lasts
 	ageing, stay   float64 // s/d a day; s/d left behind by heat and cold
@@ -67,7 +68,7 @@ func (m *Maker) movement(l lot) movement {
 	v := movement{
 		set: l.regulated + l.spread*student(r, 5), heavy: 30 * r.ExpFloat64(), towards: 2 * math.Pi * r.Float64(),
 		spring: [2]float64{1.1 * r.NormFloat64(), 1.1 * r.NormFloat64()}, isochronism: 0.4 + 0.5*r.NormFloat64(),
-		wound: 295 + 8*r.NormFloat64(), upright: 28 + 7*r.NormFloat64(), down: 6 * r.NormFloat64(),
+		wound: 295 + 8*r.NormFloat64(), upright: 28 + 7*r.NormFloat64(), down: 6 * r.NormFloat64(), ends: 1.2 * r.NormFloat64(),
 		slope: 43_200 * (elastic + 3*springs - 2*balance), curve: -0.0015, // domain notes 4.2
 		restless: 0.12 * (r.ExpFloat64() + r.ExpFloat64() + r.ExpFloat64()), calm: 0.2, ageing: 0.02 + 0.03*r.NormFloat64(),
 		stay: 0.4 * (r.ExpFloat64() - r.ExpFloat64()), drag: 12 + 5*r.NormFloat64(), sick: r.IntN(60) == 0,
@@ -115,6 +116,9 @@ func (v *movement) day(d trial.Day, l lot, kick float64) float64 {
 	rate := v.set + sum/steps + v.slope*(celsius-23) + v.curve*(celsius-23)*(celsius-23)
 	if d.Position.Vertical() { // the spring's own weight, whatever the amplitude
 		rate += v.spring[0]*math.Cos(lowest(d.Position)) + v.spring[1]*math.Sin(lowest(d.Position))
+	}
+	if d.Position == trial.FH {
+		rate += v.ends
 	}
 	return rate
 }
