@@ -31,6 +31,7 @@ type Place struct {
 	Seconds  int64        // since that reading
 	Previous *int64       // what was typed at that reading, thousandths; nil: nothing
 	Value    *int64       // what was typed at this one and stands, thousandths, unwrapped; nil: not yet
+	Quick    trial.Rate   // of the quick check (W8), for want of rates; the zero Rate: none
 }
 
 // Expectation is what a value should be, for one place: whole numbers, small enough for a page.
@@ -57,6 +58,7 @@ const (
 	shapeParts  = 4  // of a band, an entry of Shape each
 	shapeBands  = 4  // beyond so many bands a value is as likely as there
 	nearRate    = 20 // s/d: E1
+	quickSpread = 8  // s/d: two readings to a tenth, half an hour apart, in another position than the day's
 	thousand    = 1000.0
 	perDay      = trial.SecondsPerDay
 	tenth       = 100 // thousandths
@@ -107,7 +109,13 @@ func (f *Forecast) expectOne(r Round, p *Place, slips []SlipRate) (e Expectation
 	if p.Empty || r.Kind != OfRate && (p.State == nil || p.Seconds <= 0) {
 		return e
 	}
-	centre, scale, own := f.rate(r.Day, without(p.Rates[:min(len(p.Rates), r.Day-1)]))
+	k := without(p.Rates[:min(len(p.Rates), r.Day-1)])
+	centre, scale, own := f.rate(r.Day, k)
+	// A movement far from all others shows itself in the quick check, good to some 8 s/d (E1).
+	if quick := float64(p.Quick.Milli()) / thousand; len(k.x) == 0 && p.Quick.Known() && math.Abs(quick-centre) > nearRate {
+		centre, scale = quick, max(scale, quickSpread)
+	}
+	scale = min(scale, RefuseBeyond.Exact().Float()/own.look) // nothing farther off is a rate at all
 	unit := p.interval(r.Kind)
 	e.Centre = int64(math.Round(centre * unit))
 	if r.Kind != OfRate {

@@ -6,6 +6,7 @@ import (
 
 	"ratehouse/trial"
 	"ratehouse/trial/entry"
+	"ratehouse/trial/simulate/rival"
 )
 
 // hand is where a seconds hand stands at the pip.
@@ -91,6 +92,30 @@ func TestHandIsFollowed(t *testing.T) {
 	}
 	if _, s := entry.CheckHand(&wide, hand(wide.Centre+20_000, 0), 0); s != nil {
 		t.Errorf("20 s/d from the expectation: %+v", s)
+	}
+}
+
+// A movement nobody regulated, 52 s/d fast: by its hand alone it would be taken for 8 s/d slow; the
+// quick check, though only good to some seconds a day, puts the first turn right, its own past the
+// next (E1).
+func TestQuickCheckUnwraps(t *testing.T) {
+	t.Parallel()
+	f := forecastOf(t, trial.ISO3159(), historyOf(t, trial.ISO3159(), rival.New(5), 10, 100))
+	start, r := trial.State(0), entry.Round{Day: 1, Kind: entry.OfHand}
+	place := entry.Place{State: &start, Seconds: trial.SecondsPerDay}
+	e := f.Expect(r, []entry.Place{place})[0]
+	if got, _ := entry.CheckHand(&e, 52_000, 0); got.State != -8000 {
+		t.Fatalf("the test is too kind: without a quick check %+v", got)
+	}
+	place.Quick = trial.RateOf(57_600)
+	e = f.Expect(r, []entry.Place{place})[0]
+	if got, s := entry.CheckHand(&e, 52_000, 0); got.State != 52_000 || s != nil {
+		t.Errorf("with a quick check: %+v %+v", got, s)
+	}
+	next, r := trial.State(52_000), entry.Round{Day: 2, Kind: entry.OfHand}
+	e = f.Expect(r, []entry.Place{{State: &next, Seconds: trial.SecondsPerDay, Rates: ratesMilli([]int64{52_000}), Quick: place.Quick}})[0]
+	if got, s := entry.CheckHand(&e, 43_000, 0); got.State != 103_000 || s != nil {
+		t.Errorf("the day after: %+v %+v, centre %d band %d", got, s, e.Centre, e.Band)
 	}
 }
 

@@ -121,3 +121,27 @@ func TestNothingToExpect(t *testing.T) {
 		t.Errorf("history of another programme: %v", err)
 	}
 }
+
+// Check is carried over to a language whose whole numbers end at 2^53: whatever a movement has done,
+// no product on its way comes near.
+func TestCheckFitsSmallNumbers(t *testing.T) {
+	t.Parallel()
+	f, err := NewForecast(trial.ISO3159(), nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	wild := make([]trial.Rate, 15)
+	for d := range wild {
+		wild[d] = trial.RateOf(600_000 * int64(1-d%2*2))
+	}
+	state := trial.State(21_600_000)
+	for day := 1; day <= 15; day++ {
+		e := f.Expect(Round{Day: day}, []Place{{Rates: wild[:day-1], State: &state, Seconds: 3 * trial.SecondsPerDay}})[0]
+		// right or any slip of the hand; typed again, the other hand, unknown; a neighbour's value whose
+		// band is the least there is
+		most := perReadings*shapeTop + 4*e.One + 2*10*(shapeTop*e.Band/tenth)
+		if safe := int64(1) << 53; most > safe/1000 || shapeTop*e.Band > safe {
+			t.Errorf("day %d: weights up to %d, band %d", day, most, e.Band)
+		}
+	}
+}

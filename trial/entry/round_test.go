@@ -154,16 +154,17 @@ func TestRoundIsTheClock(t *testing.T) {
 	f := forecastOf(t, p, historyOf(t, p, m, 30, 100))
 	same, changed := []int{2, 4, 6, 8, 12, 14, 15}, []int{3, 5, 7, 9, 11, 13}
 	shifts := map[string]struct {
+		n    int
 		by   int64
 		code entry.ShiftCode
-	}{"as it is": {0, ""}, "1 s": {1000, entry.WholeSecond}, "pip": {-10_000, entry.WrongPip}, "hour": {3_600_000, entry.ClockChange}}
+	}{"as it is": {20, 0, ""}, "100 as they are": {100, 0, ""}, "1 s": {20, 1000, entry.WholeSecond}, "pip": {20, -10_000, entry.WrongPip}, "hour": {20, 3_600_000, entry.ClockChange}}
 	named, coded := map[string]*share{}, map[string]*share{}
 	for range 10 {
 		lot := m.Lot(p, 100)
 		for kind, days := range map[string][]int{"like the day before": same, "after a change": changed} {
 			for _, k := range days {
 				for name, shift := range shifts {
-					read := places(lot[:20], k, true)
+					read := places(lot[:shift.n], k, true)
 					for i := range read {
 						*read[i].Value += shift.by
 					}
@@ -181,7 +182,8 @@ func TestRoundIsTheClock(t *testing.T) {
 	for key, s := range named {
 		t.Logf("%s: %.0f of 100 rounds named, %.0f by its code, of %d", key, s.percent(), coded[key].percent(), s.of)
 	}
-	for key, b := range map[string][2]float64{"as it is, like the day before": {0, 12}, "as it is, after a change": {0, 8}, "1 s, like the day before": {85, 100},
+	for key, b := range map[string][2]float64{"as it is, like the day before": {0, 12}, "as it is, after a change": {0, 8},
+		"100 as they are, like the day before": {0, 15}, "100 as they are, after a change": {0, 8}, "1 s, like the day before": {85, 100},
 		"pip, like the day before": {98, 100}, "pip, after a change": {85, 100}, "hour, like the day before": {100, 100}, "hour, after a change": {100, 100}} {
 		if got := named[key].percent(); got < b[0] || got > b[1] {
 			t.Errorf("%s: %.0f of 100 rounds named, want %.0f to %.0f", key, got, b[0], b[1])
