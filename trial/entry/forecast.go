@@ -117,6 +117,9 @@ next:
 	return k
 }
 
+// mostKept bounds what is kept; a batch with gaps everywhere has some tens.
+const mostKept = 256
+
 // conditional is kept: the places of a round mostly know the same days.
 func (f *Forecast) conditional(days []int) *trial.Conditional {
 	key := make([]byte, 0, 2*len(days))
@@ -127,6 +130,9 @@ func (f *Forecast) conditional(days []int) *trial.Conditional {
 	defer f.mu.Unlock()
 	c, ok := f.given[string(key)]
 	if !ok {
+		if len(f.given) == mostKept {
+			clear(f.given)
+		}
 		c = f.normal.Given(days)
 		f.given[string(key)] = c
 	}

@@ -3,6 +3,7 @@ package entry
 import (
 	"math"
 	"math/rand/v2"
+	"sync"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
@@ -143,5 +144,49 @@ func TestCheckFitsSmallNumbers(t *testing.T) {
 		if safe := int64(1) << 53; most > safe/1000 || shapeTop*e.Band > safe {
 			t.Errorf("day %d: weights up to %d, band %d", day, most, e.Band)
 		}
+	}
+}
+
+// One forecast serves many pages at once, whichever days their movements know; more such sets than are
+// kept change nothing.
+func TestForecastIsShared(t *testing.T) {
+	t.Parallel()
+	p := trial.ISO3159()
+	shared, err := NewForecast(p, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	state, rate := trial.State(0), trial.RateOf(1500)
+	placeOf := func(pattern int) []Place {
+		rates := make([]trial.Rate, 14)
+		for d := range rates {
+			if pattern>>d&1 == 1 {
+				rates[d] = rate
+			}
+		}
+		return []Place{{Rates: rates, State: &state, Seconds: trial.SecondsPerDay}}
+	}
+	var group sync.WaitGroup
+	for worker := range 4 {
+		group.Go(func() {
+			own, err := NewForecast(p, nil)
+			if err != nil {
+				t.Error(err)
+				return
+			}
+			for i := range 2 * mostKept {
+				own.given = map[string]*trial.Conditional{}
+				pattern := (i*31 + worker*5) % (1 << 14)
+				got, want := shared.Expect(Round{Day: 15}, placeOf(pattern))[0], own.Expect(Round{Day: 15}, placeOf(pattern))[0]
+				if got.Centre != want.Centre || got.Band != want.Band {
+					t.Errorf("days %b: %d ± %d, want %d ± %d", pattern, got.Centre, got.Band, want.Centre, want.Band)
+					return
+				}
+			}
+		})
+	}
+	group.Wait()
+	if len(shared.given) > mostKept {
+		t.Errorf("%d sets of days kept", len(shared.given))
 	}
 }
