@@ -10,7 +10,8 @@ type Suspect struct {
 
 // Check tells whether a value smells: nil is nothing, else it is asked again, blind, and Suspect is
 // shown only afterwards (practice.md E8). Asked again is what lies farther from the expectation than
-// its band, to either side alike. Whole numbers only: web/static carries the same function.
+// its band, to either side alike. Whole numbers only, divisions towards zero, nothing beyond 2^53: a page
+// can carry the same function.
 func Check(e *Expectation, value int64) *Suspect {
 	if !e.Known || magnitude(value-e.Centre) <= e.Band {
 		return nil

@@ -43,15 +43,17 @@ func count(n int, change func(order []int) []int) []int {
 
 // practice.md E6, on the second generator, holders of 20 and of 5: each slip of a whole holder is
 // offered as one act that puts every value where it belongs; holders typed rightly are left alone.
-// Hands were set to within 15 s at the start, so that states differ by more than rates do.
+// Hands were set to within 15 s at the start, so that states differ by more than rates do; and the
+// same with all set to zero, where only rates tell the movements apart.
 func TestHolderSlips(t *testing.T) {
 	t.Parallel()
 	p, m, rng := trial.ISO3159(), rival.New(31), rand.New(rand.NewPCG(6, 6))
 	f := forecastOf(t, p, historyOf(t, p, m, 10, 100))
 	for _, c := range []struct {
 		n            int
+		zero         bool
 		first, later float64 // least share found in round 1 and later, percent
-	}{{20, 65, 90}, {5, 25, 80}} {
+	}{{20, false, 65, 90}, {5, false, 25, 80}, {20, true, 0, 80}, {5, true, 0, 50}} {
 		right, found := share{}, map[string]*share{}
 		see := func(k int, name string, got *entry.Repair, code entry.RepairCode, order []int) {
 			key := fmt.Sprintf("%s, %s", name, map[bool]string{true: "round 1", false: "later"}[k == 1])
@@ -62,6 +64,9 @@ func TestHolderSlips(t *testing.T) {
 		}
 		for range 6 {
 			lot := m.Lot(p, 100)
+			if c.zero {
+				setToZero(lot)
+			}
 			for _, k := range []int{1, 2, 3, 4, 9, 11, 13, 14} {
 				for at := 0; at+2*c.n <= 100; at += c.n {
 					h, next := holderOf(f, lot[at:at+c.n], k), holderOf(f, lot[at+c.n:at+2*c.n], k)
@@ -91,12 +96,12 @@ func TestHolderSlips(t *testing.T) {
 				}
 			}
 		}
-		t.Logf("holders of %d typed rightly: %d of %d offered a repair", c.n, right.hits, right.of)
+		t.Logf("holders of %d, set to zero %v, typed rightly: %d of %d offered a repair", c.n, c.zero, right.hits, right.of)
 		if right.hits > 3 { // at most 1 in 1,000 is meant
 			t.Errorf("holders of %d typed rightly: %d of %d offered a repair", c.n, right.hits, right.of)
 		}
 		for name, s := range found {
-			t.Logf("holders of %d, %s: %.0f of 100 put right, of %d", c.n, name, s.percent(), s.of)
+			t.Logf("holders of %d, set to zero %v, %s: %.0f of 100 put right, of %d", c.n, c.zero, name, s.percent(), s.of)
 			least := c.later
 			if name[len(name)-1] == '1' {
 				least = c.first
@@ -104,6 +109,15 @@ func TestHolderSlips(t *testing.T) {
 			if s.percent() < least {
 				t.Errorf("holders of %d, %s: %.0f of 100 put right, want %.0f", c.n, name, s.percent(), least)
 			}
+		}
+	}
+}
+
+// setToZero shifts all states of each movement so that it starts at zero.
+func setToZero(lot [][]trial.State) {
+	for _, s := range lot {
+		for k, start := 0, s[0]; k < len(s); k++ {
+			s[k] -= start
 		}
 	}
 }
