@@ -61,8 +61,9 @@ const (
 	quickSpread = 8  // s/d: two readings to a tenth, half an hour apart, in another position than the day's
 	thousand    = 1000.0
 	perDay      = trial.SecondsPerDay
-	tenth       = 100 // thousandths
-	fewest      = 5   // values of a round from which what they have in common is learnt
+	tenth       = 100    // thousandths
+	roundedBy   = 0.0289 // s: standard deviation of rounding to a tenth
+	fewest      = 5      // values of a round from which what they have in common is learnt
 	medianWaste = math.Pi / 2
 )
 
@@ -115,7 +116,8 @@ func (f *Forecast) expectOne(r Round, p *Place, slips []SlipRate) (e Expectation
 	if quick := float64(p.Quick.Milli()) / thousand; len(k.x) == 0 && p.Quick.Known() && math.Abs(quick-centre) > nearRate {
 		centre, scale = quick, max(scale, quickSpread)
 	}
-	scale = min(scale, RefuseBeyond.Exact().Float()/own.look) // nothing farther off is a rate at all
+	// At least what a tenth is rounded by; at most what is a rate at all.
+	scale = max(roundedBy, min(scale, RefuseBeyond.Exact().Float()/own.look))
 	unit := p.interval(r.Kind)
 	e.Centre = int64(math.Round(centre * unit))
 	if r.Kind != OfRate {

@@ -157,7 +157,7 @@ func (f *Forecast) rate(day int, k known) (centre, scale float64, own *tail) {
 		}
 	}
 	factor, own := f.widen(k, c, share)
-	return c.Mean(day, k.x), math.Sqrt(v * factor), own
+	return c.Mean(day, k.x), math.Sqrt(max(0, v*factor)), own
 }
 
 // firstChill tells the first day at another temperature than all before: how closely a movement keeps
