@@ -1,5 +1,7 @@
 package trial
 
+import "math"
+
 // Milli counts thousandths: of a second for a state, of a second per day for a rate, of a degree
 // for a temperature.
 type Milli int64
@@ -72,4 +74,20 @@ func (r Rate) Decimal(places int) string {
 		return ""
 	}
 	return r.Exact().Decimal(places)
+}
+
+// Milli gives the rate in whole thousandths of s/d, rounded half to even; zero if not read. For
+// statistics: verdicts take Exact. A rate too large for that gives the nearest bound of int64.
+func (r Rate) Milli() Milli {
+	if m, ok := r.Thousandths(); ok || r.den == 0 {
+		return Milli(m)
+	}
+	q, ok := roundHalfEven(r.num, 1, r.den)
+	if !ok {
+		q = math.MaxInt64
+		if r.num < 0 {
+			q = -q
+		}
+	}
+	return Milli(q)
 }

@@ -42,7 +42,7 @@ func commands() []command {
 		{"demo", "serve an invented laboratory with demo data", "ratehouse demo", runDemo, demoFlags},
 		{"judge", "judge movements from a file of rates or states", "ratehouse judge rates.csv", runJudge, judgeFlags},
 		{"outlook", "estimate how likely open movements will pass", "ratehouse outlook -history past.csv open.csv", nil, nil},
-		{"simulate", "make physically plausible movements", "ratehouse simulate -n 100 -seed 1", nil, nil},
+		{"simulate", "make physically plausible movements", "ratehouse simulate -n 100 -seed 1 | ratehouse judge", runSimulate, simulateFlags},
 		{"programme", "check, show or add test programmes", "ratehouse programme check winter.json", runProgramme, programmeFlags},
 		{"verify", "verify a certificate file", "ratehouse verify -key lab.pub certificate.json", runVerify, verifyFlags},
 		{"migrate", "bring the database up to date", "DATABASE_OWNER_URL=postgres://... ratehouse migrate", runMigrate, migrateFlags},

@@ -14,7 +14,7 @@ import (
 type Model struct {
 	Mean, MeanSpread float64 // rate of the movement over all positions
 	PoiseSpread      float64 // of each component of the vertical pattern: its size is Rayleigh
-	FlatSpread       float64 // of dial up and dial down against the vertical mean
+	FlatSpread       float64 // what the pivots do: dial up and dial down against the vertical mean
 	ThermalMean      float64 // slope of the calibre, s/d per °C
 	ThermalSpread    float64
 	ThermalCurve     float64 // s/d per °C², about 23 °C
