@@ -20,6 +20,7 @@ func runJudge(_ context.Context, p program, args []string) int {
 type judgeJob struct {
 	prog           *trial.Programme
 	states         bool
+	uncertainty    trial.Exact // above 0: probabilities are wanted
 	format         sheet.VerdictFormat
 	stdout, stderr io.Writer
 }
@@ -40,9 +41,13 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 		return exitUsage
 	}
 	job := judgeJob{prog: trial.ISO3159(), states: *states, format: sheet.VerdictFormat(*format), stdout: stdout, stderr: stderr}
+	if flagGiven(flags, "uncertainty") {
+		var err error
+		if job.uncertainty, err = parseUncertainty(*uncertainty); err != nil {
+			return job.fail(err.Error())
+		}
+	}
 	switch {
-	case *uncertainty != "":
-		return job.fail("-uncertainty: not built yet")
 	case *code != job.prog.Code:
 		return job.fail("-programme with another programme than " + job.prog.Code + ": not built yet")
 	case job.format != sheet.CSV && job.format != sheet.JSON:
@@ -64,7 +69,9 @@ Reads rows serial,category,d1..d15 (rates in s/d) and prints a verdict a row.
   -programme CODE  test programme (default iso3159)
   -states          rows are serial,category,s0..s15: states in s, one a day at 24 h
   -format FORMAT   csv (default) or json, one object a line
-  -uncertainty U   standard uncertainty of one state reading in s (not built yet)
+  -uncertainty U   standard uncertainty of one state reading in s: adds pM, pV, ... pAll, the
+                   probability that true values lie within limits (reading only: other
+                   sources of uncertainty are not in it)
 
 Refused rows are named on standard error; the exit code is then 1.
 
@@ -97,8 +104,13 @@ func (j judgeJob) run(in io.Reader) int {
 			return j.fail(err.Error())
 		}
 	}
-	verdicts := sheet.NewVerdicts(j.stdout, j.prog, j.format, movements.HasCalibre)
-	refused, err := j.rows(movements, judges, verdicts)
+	open := sheet.NewVerdicts
+	var doubts *doubt
+	if j.uncertainty.Sign() > 0 {
+		open, doubts = sheet.NewVerdictsWithChances, newDoubt(judges, j.uncertainty)
+	}
+	verdicts := open(j.stdout, j.prog, j.format, movements.HasCalibre)
+	refused, err := j.rows(movements, judges, doubts, verdicts)
 	if closing := verdicts.Close(); closing != nil {
 		return j.fail("cannot write: " + closing.Error())
 	}
@@ -112,7 +124,7 @@ func (j judgeJob) run(in io.Reader) int {
 }
 
 // rows judges row after row. An error is the reader's: the writer keeps its own until Close.
-func (j judgeJob) rows(movements *sheet.Movements, judges []*trial.Judge, verdicts *sheet.Verdicts) (refused bool, err error) {
+func (j judgeJob) rows(movements *sheet.Movements, judges []*trial.Judge, doubts *doubt, verdicts *sheet.Verdicts) (refused bool, err error) {
 	results := make([]trial.Result, len(judges))
 	for {
 		m, fault, err := movements.Next()
@@ -128,6 +140,9 @@ func (j judgeJob) rows(movements *sheet.Movements, judges []*trial.Judge, verdic
 		}
 		result := &results[m.Category]
 		judges[m.Category].MilliLong(m.Rates, m.Known, result)
+		if doubts != nil {
+			doubts.add(m, result, verdicts)
+		}
 		category := j.prog.Categories[m.Category].Code
 		if verdicts.Write(m.Serial, []byte(category), m.Calibre, result) != nil {
 			return refused, nil
