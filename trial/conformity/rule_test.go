@@ -1,0 +1,163 @@
+package conformity_test
+
+import (
+	"math"
+	"testing"
+
+	"ratehouse/trial"
+	"ratehouse/trial/conformity"
+)
+
+// within tells two numbers at most so far apart.
+func within(t *testing.T, name string, got, want, most float64) {
+	t.Helper()
+	if !(math.Abs(got-want) <= most) {
+		t.Errorf("%s: %.12g, want %.12g", name, got, want)
+	}
+}
+
+type jcgm struct {
+	JCGM struct {
+		Zener struct {
+			Y, U, PC float64
+			TU       float64 `json:"T_U"`
+		}
+		Container struct {
+			Y, U, PC float64
+			TL       float64 `json:"T_L"`
+		}
+		Resistors risks            `json:"resistors_g0"`
+		Guarded   map[string]risks `json:"resistors_guard_w=r*U"`
+		ILAC      map[string]struct {
+			W    float64 `json:"w_over_U"`
+			Risk float64 `json:"specific_risk_at_AL"`
+		} `json:"ilac_g8_guard"`
+		C struct{ Y, U, PC float64 } `json:"pc_two_sided_C"`
+		M struct{ Y, U, PC float64 } `json:"pc_formula_two_sided_example_M"`
+		A struct {
+			K float64 `json:"k"`
+		} `json:"acceptance_limit_for_pc95_one_sided"`
+	} `json:"jcgm106"`
+}
+
+type risks struct {
+	RC float64 `json:"RC"`
+	RP float64 `json:"RP"`
+	N  float64 `json:"p_nonconforming"`
+	W  float64 `json:"w"`
+}
+
+// The worked examples of the check values, topic 5.
+func TestGuides(t *testing.T) {
+	t.Parallel()
+	var file jcgm
+	readJSON(t, "published.json", &file)
+	g := file.JCGM
+	inf := math.Inf(1)
+	within(t, "zener diode", conformity.Probability(g.Zener.Y, g.Zener.U, -inf, g.Zener.TU), g.Zener.PC, 1e-12)
+	within(t, "container", conformity.Probability(g.Container.Y, g.Container.U, g.Container.TL, inf), g.Container.PC, 1e-12)
+	within(t, "C of 0.595", conformity.Probability(g.C.Y, g.C.U, -.6, .6), g.C.PC, 1e-12)
+	within(t, "M of 5.9", conformity.Probability(g.M.Y, g.M.U, -4, 6), g.M.PC, 1e-12)
+	within(t, "95 % one-sided", conformity.AcceptanceLimitFor(0.95), g.A.K, 1e-12)
+	if len(g.ILAC) != 5 || len(g.Guarded) != 5 {
+		t.Fatalf("%d rows, %d guards", len(g.ILAC), len(g.Guarded))
+	}
+	for name, row := range g.ILAC {
+		within(t, "worst risk at w = "+name, conformity.WorstRisk(row.W), row.Risk, 1e-12)
+	}
+	p := conformity.Production{Mean: 1500, SD: 0.12}
+	r := conformity.GlobalRisks(p, 0.04, 1499.8, 1500.2, 0)
+	within(t, "resistors, consumer", r.Consumer, g.Resistors.RC, 1e-10)
+	within(t, "resistors, producer", r.Producer, g.Resistors.RP, 1e-10)
+	within(t, "resistors, nonconforming", r.Nonconforming, g.Resistors.N, 1e-12)
+	for name, want := range g.Guarded {
+		r := conformity.GlobalRisks(p, 0.04, 1499.8, 1500.2, want.W)
+		within(t, "consumer, guard "+name, r.Consumer, want.RC, 1e-9)
+		within(t, "producer, guard "+name, r.Producer, want.RP, 1e-9)
+	}
+	// M of a lot, the error 170 times smaller than the spread: acceptance turns within 0.1 s/d.
+	r = conformity.GlobalRisks(conformity.Production{Mean: 1, SD: 2.5}, math.Sqrt2*0.1/10, -4, 6, 0)
+	within(t, "M of a lot, consumer", r.Consumer, 0.0002419692005187807, 1e-9)
+	within(t, "M of a lot, producer", r.Producer, 0.0002454246500176705, 1e-9)
+	one := conformity.GlobalRisks(conformity.Production{Mean: 0, SD: 1}, 0, -inf, 0, 0)
+	within(t, "one-sided, exact measuring", one.Consumer+one.Producer, 0, 1e-12)
+	within(t, "one-sided, nonconforming", one.Nonconforming, 0.5, 1e-12)
+}
+
+func TestAcceptance(t *testing.T) {
+	t.Parallel()
+	limit := trial.Limit{HasMin: true, HasMax: true, Min: exact(t, "-4"), Max: exact(t, "6")}
+	a, ok := conformity.Acceptance(limit, exact(t, "0.5"))
+	if !ok || a.Min.Cmp(exact(t, "-3.5")) != 0 || a.Max.Cmp(exact(t, "5.5")) != 0 {
+		t.Errorf("%v to %v, %v", a.Min, a.Max, ok)
+	}
+	if _, ok := conformity.Acceptance(limit, exact(t, "5")); !ok {
+		t.Error("one point is left")
+	}
+	if _, ok := conformity.Acceptance(limit, exact(t, "5.001")); ok {
+		t.Error("crossed limits accept nothing")
+	}
+	a, ok = conformity.Acceptance(trial.Limit{HasMax: true, Max: exact(t, "2")}, exact(t, "5"))
+	if !ok || a.HasMin || a.Max.Cmp(exact(t, "-3")) != 0 {
+		t.Errorf("one-sided: %v %v", a, ok)
+	}
+	w, _ := conformity.GuardBand(trial.Decision{Rule: trial.Guarded, Guard: trial.Ratio(1, 1)}, 0.0141421356)
+	if w.Cmp(exact(t, "0.028285")) != 0 { // 0.0282842712 rounded up
+		t.Errorf("guard band %v", w)
+	}
+	if w, ok := conformity.GuardBand(trial.Decision{Rule: trial.Simple, Guard: trial.Ratio(1, 1)}, 1); !ok || w.Sign() != 0 {
+		t.Errorf("simple acceptance keeps a band of %v", w)
+	}
+}
+
+// M of 5.99 and u_s of 0.1 passes the simple rule, and the guarded one refuses it.
+func TestDecide(t *testing.T) {
+	t.Parallel()
+	rates := make([]string, 15)
+	for d := range rates {
+		rates[d] = "5.99"
+	}
+	m := measure(t, rates)
+	for _, c := range []struct {
+		guard    string
+		accepted bool
+	}{{"0", true}, {"0.3", true}, {"0.36", false}, {"1", false}} { // U(M) = 0.0282843: 0.01 is 0.3536 of it
+		p := trial.ISO3159()
+		p.Decision = trial.Decision{Rule: trial.Guarded, Guard: exact(t, c.guard)}
+		j, err := trial.NewJudge(p, "1")
+		if err != nil {
+			t.Fatal(err)
+		}
+		var r trial.Result
+		j.Rates(m.exact, &r)
+		d, ok := chained(j, exact(t, "0.1")).Decide(m.rates, &r)
+		if !ok || d.Accepted != c.accepted || len(d.Failed) != 0 || c.accepted != (len(d.Refused) == 0) {
+			t.Errorf("guard %s: %+v %v", c.guard, d, ok)
+		}
+	}
+	j := newJudge(t, "1")
+	var r trial.Result
+	m.exact[0] = trial.Rate{}
+	j.Rates(m.exact, &r)
+	if _, ok := chained(j, exact(t, "0.1")).Decide(m.rates, &r); ok {
+		t.Error("decided with a blank day")
+	}
+}
+
+// For a magnitude the uncertainty is that of the figure which decides it.
+func TestUncertainty(t *testing.T) {
+	t.Parallel()
+	j := newJudge(t, "1")
+	a := chained(j, exact(t, "1"))
+	rates := measure(t, []string{"9", "0", "0", "0", "0", "0", "0", "0", "0", "0", "0", "0", "0", "0", "0"}).rates
+	for i, want := range []float64{math.Sqrt(0.02), -1, math.Sqrt(6), 1, 1.349073756323, 1. / 15, math.Sqrt(2.5)} {
+		if u, ok := a.Uncertainty(rates, i); want > 0 && (!ok || math.Abs(u-want) > 1e-12) {
+			t.Errorf("criterion %d: %v %v, want %v", i, u, ok, want)
+		}
+	}
+	// V with all five variations upwards: (30 + 2·4)/25, neighbours sharing a state with weight 1.
+	up := measure(t, []string{"0", "9", "0", "9", "0", "9", "0", "9", "0", "9", "0", "0", "0", "0", "0"}).rates
+	if u, ok := a.Uncertainty(up, 1); !ok || math.Abs(u-math.Sqrt(38./25)) > 1e-12 {
+		t.Errorf("u(V) %v %v, want %v", u, ok, math.Sqrt(38./25))
+	}
+}
