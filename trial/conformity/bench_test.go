@@ -70,3 +70,36 @@ func BenchmarkAssess5000(b *testing.B) {
 		})
 	}
 }
+
+// BenchmarkHinges5000 finds the hinges of 5,000 movements and compares with judging each of them
+// once a reading and direction, the least any search must do.
+func BenchmarkHinges5000(b *testing.B) {
+	flat := lot(5000)
+	j := newJudge(b, "1")
+	chain := conformity.Chain(15)
+	rates := make([]trial.Rate, 15)
+	var r trial.Result
+	searched, judged := time.Hour, time.Hour
+	for b.Loop() {
+		start := time.Now()
+		for _, m := range flat {
+			for d, x := range m {
+				rates[d] = trial.RateOf(x)
+			}
+			for range 32 {
+				j.Rates(rates, &r)
+			}
+		}
+		mid := time.Now()
+		for _, m := range flat {
+			for d, x := range m {
+				rates[d] = trial.RateOf(x)
+			}
+			conformity.Hinges(j, rates, chain)
+		}
+		judged, searched = min(judged, mid.Sub(start)), min(searched, time.Since(mid))
+	}
+	b.ReportMetric(float64(searched)/float64(judged), "times-judging-32")
+	b.ReportMetric(float64(searched.Nanoseconds())/5000, "ns/movement")
+	b.ReportMetric(0, "ns/op")
+}
