@@ -20,7 +20,7 @@ func runJudge(_ context.Context, p program, args []string) int {
 type judgeJob struct {
 	prog           *trial.Programme
 	states         bool
-	uncertainty    trial.Exact // above 0: probabilities are wanted
+	budget         *trial.Budget // nil: no probabilities are wanted
 	format         sheet.VerdictFormat
 	stdout, stderr io.Writer
 }
@@ -34,6 +34,7 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 	code := flags.String("programme", "iso3159", "")
 	states := flags.Bool("states", false, "")
 	uncertainty := flags.String("uncertainty", "", "")
+	budget := flags.String("budget", "", "")
 	format := flags.String("format", "csv", "")
 	if err := flags.Parse(args); errors.Is(err, flag.ErrHelp) {
 		return exitDone
@@ -41,11 +42,8 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 		return exitUsage
 	}
 	job := judgeJob{prog: trial.ISO3159(), states: *states, format: sheet.VerdictFormat(*format), stdout: stdout, stderr: stderr}
-	if flagGiven(flags, "uncertainty") {
-		var err error
-		if job.uncertainty, err = parseUncertainty(*uncertainty); err != nil {
-			return job.fail(err.Error())
-		}
+	if err := job.wantDoubt(flags, *uncertainty, *budget); err != nil {
+		return job.fail(err.Error())
 	}
 	switch {
 	case *code != job.prog.Code:
@@ -72,6 +70,7 @@ Reads rows serial,category,d1..d15 (rates in s/d) and prints a verdict a row.
   -uncertainty U   standard uncertainty of one state reading in s: adds pM, pV, ... pAll, the
                    probability that true values lie within limits (reading only: other
                    sources of uncertainty are not in it)
+  -budget FILE     the same for a whole uncertainty budget, a JSON file
 
 Refused rows are named on standard error; the exit code is then 1.
 
@@ -104,10 +103,9 @@ func (j judgeJob) run(in io.Reader) int {
 			return j.fail(err.Error())
 		}
 	}
-	open := sheet.NewVerdicts
-	var doubts *doubt
-	if j.uncertainty.Sign() > 0 {
-		open, doubts = sheet.NewVerdictsWithChances, newDoubt(judges, j.uncertainty)
+	open, doubts := sheet.NewVerdicts, j.doubt(judges)
+	if doubts != nil {
+		open = sheet.NewVerdictsWithChances
 	}
 	verdicts := open(j.stdout, j.prog, j.format, movements.HasCalibre)
 	refused, err := j.rows(movements, judges, doubts, verdicts)

@@ -3,7 +3,9 @@ package main
 import (
 	"errors"
 	"flag"
+	"fmt"
 	"math"
+	"os"
 	"strings"
 
 	"ratehouse/trial"
@@ -11,10 +13,13 @@ import (
 	"ratehouse/trial/sheet"
 )
 
-// doubt is what judge -uncertainty adds: how probable it is that true values lie within limits,
-// given the uncertainty of a state reading alone.
+// doubt is what judge -uncertainty and -budget add: how probable it is that true values lie within
+// limits, given the uncertainty of a state reading alone or a laboratory's whole budget.
 type doubt struct {
-	assessors []*conformity.Assessor // by category
+	judges    []*trial.Judge // by category
+	assessors []*conformity.Assessor
+	budget    trial.Budget
+	varies    bool // the covariance hangs on the movement's own slope with temperature
 	rates     []float64
 	chances   conformity.Chances
 	each      []float64
@@ -34,15 +39,37 @@ func parseUncertainty(s string) (trial.Exact, error) {
 	return u, nil
 }
 
-// newDoubt prepares the categories' assessors; days share their readings, one a day at 24 h.
-func newDoubt(judges []*trial.Judge, u trial.Exact) *doubt {
-	p := judges[0].Programme()
-	d := &doubt{rates: make([]float64, len(p.Days)), each: make([]float64, len(p.Criteria))}
-	cov := conformity.Propagate(p, conformity.Chain(len(p.Days)), trial.ReadingOnly(u), conformity.Movement{})
-	for _, j := range judges {
-		d.assessors = append(d.assessors, conformity.NewAssessor(j, cov))
+// readBudget reads a budget file.
+func readBudget(name string) (trial.Budget, error) {
+	data, err := os.ReadFile(name)
+	if err != nil {
+		return trial.Budget{}, err
+	}
+	b, err := sheet.ParseBudget(data)
+	if err != nil {
+		return trial.Budget{}, fmt.Errorf("%s: %w", name, err)
+	}
+	return b, nil
+}
+
+// doubt prepares the categories' assessors if probabilities are wanted; else it is nil.
+func (j judgeJob) doubt(judges []*trial.Judge) *doubt {
+	if j.budget == nil {
+		return nil
+	}
+	p := j.prog
+	d := &doubt{judges: judges, budget: *j.budget, rates: make([]float64, len(p.Days)), each: make([]float64, len(p.Criteria))}
+	d.varies = p.Measurand == trial.AtNominal && (d.budget.ChamberSystematic.Sign() > 0 || d.budget.ChamberRandom.Sign() > 0)
+	for _, one := range judges {
+		d.assessors = append(d.assessors, d.assessor(one, conformity.Movement{}))
 	}
 	return d
+}
+
+// assessor is for days that share their readings, one a day at 24 h.
+func (d *doubt) assessor(j *trial.Judge, m conformity.Movement) *conformity.Assessor {
+	p := j.Programme()
+	return conformity.NewAssessor(j, conformity.Propagate(p, conformity.Chain(len(p.Days)), d.budget, m))
 }
 
 // add gives the verdicts their probabilities for the movement written next.
@@ -50,7 +77,13 @@ func (d *doubt) add(m *sheet.Movement, r *trial.Result, to *sheet.Verdicts) {
 	for i, milli := range m.Rates {
 		d.rates[i] = float64(milli) / 1000
 	}
-	d.assessors[m.Category].Assess(d.rates, r, &d.chances)
+	a := d.assessors[m.Category]
+	if j := d.judges[m.Category]; d.varies {
+		if slope, ok := conformity.Slope(j, r); ok {
+			a = d.assessor(j, conformity.Movement{Slope: slope.Float()})
+		}
+	}
+	a.Assess(d.rates, r, &d.chances)
 	for i, c := range d.chances.Each {
 		d.each[i] = orNaN(c)
 	}
@@ -64,8 +97,26 @@ func orNaN(c conformity.Chance) float64 {
 	return c.P
 }
 
-// flagGiven tells whether a flag stands on the command line, be it empty.
-func flagGiven(flags *flag.FlagSet, name string) (given bool) {
-	flags.Visit(func(f *flag.Flag) { given = given || f.Name == name })
-	return given
+// wantDoubt notes which probabilities the command line asks for.
+func (j *judgeJob) wantDoubt(flags *flag.FlagSet, uncertainty, budget string) error {
+	given := map[string]bool{}
+	flags.Visit(func(f *flag.Flag) { given[f.Name] = true })
+	switch {
+	case given["uncertainty"] && given["budget"]:
+		return errors.New("-uncertainty and -budget exclude each other")
+	case given["uncertainty"]:
+		u, err := parseUncertainty(uncertainty)
+		if err != nil {
+			return err
+		}
+		b := trial.ReadingOnly(u)
+		j.budget = &b
+	case given["budget"]:
+		b, err := readBudget(budget)
+		if err != nil {
+			return err
+		}
+		j.budget = &b
+	}
+	return nil
 }

@@ -107,3 +107,44 @@ func TestJudgeUncertaintyAtTheLimit(t *testing.T) {
 		t.Errorf("pM %s", got)
 	}
 }
+
+// A budget of reading alone is the same as -uncertainty; a full one leaves more doubt.
+func TestJudgeBudget(t *testing.T) {
+	t.Parallel()
+	write := func(text string) string {
+		name := filepath.Join(t.TempDir(), "budget.json")
+		if err := os.WriteFile(name, []byte(text), 0o600); err != nil {
+			t.Fatal(err)
+		}
+		return name
+	}
+	days := map[int]string{}
+	for d := 1; d <= 10; d++ {
+		days[d] = "5.98"
+	}
+	input := header + "\n" + row("A", "1", days) + "\n"
+	alone, _, _ := runWith(t, input, "judge", "-uncertainty", "0.1")
+	same, stderr, code := runWith(t, input, "judge", "-budget", write(`{"title": "reading", "read_s": "0.1"}`))
+	if alone != same || code != 0 || stderr != "" {
+		t.Errorf("%d %s%s, want %s", code, stderr, same, alone)
+	}
+	// u(M) of the worked file as performed: u_s² = 0.1² + 0.2²/12 + 0.05² + 0.16²/2 over fifty, handling
+	// 0.05²/10, frequency 0.001²: 0.028700; 0.02 s/d to the limit make Φ(0.69687).
+	full, _, code := runWith(t, input, "judge", "-budget", filepath.Join("..", "..", "testdata", "conformity", "budget.json"))
+	if got := strings.Split(strings.Split(full, "\n")[1], ",")[12]; code != 0 || got != "0.757059" {
+		t.Errorf("%d %s", code, got)
+	}
+	for _, c := range []struct {
+		args []string
+		want string
+	}{
+		{[]string{"-budget", "no-such-file"}, "no-such-file"},
+		{[]string{"-budget", write(`{"read_s": "-1"}`)}, "budget.read_s: -1 is outside what is allowed"},
+		{[]string{"-budget", write(`{"read_s": "1"}`), "-uncertainty", "0.1"}, "exclude each other"},
+	} {
+		stdout, stderr, code := runWith(t, input, append([]string{"judge"}, c.args...)...)
+		if stdout != "" || code != exitUsage || !strings.Contains(stderr, c.want) {
+			t.Errorf("%v: %d %q %q", c.args, code, stdout, stderr)
+		}
+	}
+}

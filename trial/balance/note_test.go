@@ -192,7 +192,9 @@ func TestRegulation(t *testing.T) {
 	j := newJudge(t)
 	rng := rand.New(rand.NewPCG(4, 4))
 	found := 0
-	for range 200 {
+	moved := make([]int64, 15)
+	var out trial.Result
+	for range 60 {
 		r := make([]int64, 15)
 		mean := rng.Int64N(40_000) - 20_000
 		for d := range r {
@@ -201,9 +203,8 @@ func TestRegulation(t *testing.T) {
 		s, ok := balance.Regulation(j, ratesOf(r))
 		lo, hi := int64(1), int64(0)
 		for by := int64(-30_000); by <= 30_000; by++ {
-			moved := slices.Clone(r)
+			copy(moved, r)
 			shift(moved, by)
-			var out trial.Result
 			j.Milli(moved, 1<<15-1, &out)
 			if out.Verdict == trial.Pass {
 				if lo > hi {
@@ -219,8 +220,8 @@ func TestRegulation(t *testing.T) {
 			found++
 		}
 	}
-	if found < 20 {
-		t.Errorf("only %d of 200 can be regulated", found)
+	if found < 10 {
+		t.Errorf("only %d of 60 can be regulated", found)
 	}
 	blank := ratesOf(sound())
 	blank[14] = trial.Rate{}
