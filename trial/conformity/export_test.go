@@ -11,8 +11,11 @@ func Lattices() map[int][]int {
 	return map[int][]int{tiny.n: tiny.z[:], short.n: short.z[:], long.n: long.z[:]}
 }
 
-// QuickPhi and Phi are the table and the function.
+// The tables and the functions.
 func QuickPhi(x float64) float64 { return quickPhi(x) }
 
-// Phi is phi.
+func QuickQuantile(p float64) float64 { return quickQuantile(p) }
+
+func Quantile(p float64) float64 { return quantile(p) }
+
 func Phi(x float64) float64 { return phi(x) }

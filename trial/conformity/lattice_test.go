@@ -54,3 +54,12 @@ func TestQuickPhi(t *testing.T) {
 		}
 	}
 }
+
+func TestQuickQuantile(t *testing.T) {
+	t.Parallel()
+	for p := 1e-6; p < 1; p += 0.0000917 {
+		if off := math.Abs(conformity.QuickQuantile(p) - conformity.Quantile(p)); off > 1e-7 {
+			t.Fatalf("at %v off by %v", p, off)
+		}
+	}
+}

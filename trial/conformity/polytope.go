@@ -310,7 +310,7 @@ func within(a, b, u float64) (p, z float64) {
 	}
 	pa := quickPhi(a)
 	p = quickPhi(b) - pa
-	return p, math.Min(math.Max(quantile(pa+u*p), a), b)
+	return p, math.Min(math.Max(quickQuantile(pa+u*p), a), b)
 }
 
 func grow(s []float64, n int) []float64 {
