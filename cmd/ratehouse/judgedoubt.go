@@ -66,10 +66,10 @@ func (j judgeJob) doubt(judges []*trial.Judge) *doubt {
 	return d
 }
 
-// assessor is for days that share their readings, one a day at 24 h.
+// assessor is for days that share their readings.
 func (d *doubt) assessor(j *trial.Judge, m conformity.Movement) *conformity.Assessor {
 	p := j.Programme()
-	return conformity.NewAssessor(j, conformity.Propagate(p, conformity.Chain(len(p.Days)), d.budget, m))
+	return conformity.NewAssessor(j, conformity.Propagate(p, conformity.Chain(p), d.budget, m))
 }
 
 // add gives the verdicts their probabilities for the movement written next.

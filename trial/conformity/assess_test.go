@@ -38,7 +38,7 @@ func assess(j *trial.Judge, a *conformity.Assessor, m measured) conformity.Chanc
 }
 
 func chained(j *trial.Judge, u trial.Exact) *conformity.Assessor {
-	return conformity.NewAssessor(j, conformity.Propagate(j.Programme(), conformity.Chain(15), trial.ReadingOnly(u), conformity.Movement{}))
+	return conformity.NewAssessor(j, conformity.Propagate(j.Programme(), conformity.Chain(trial.ISO3159()), trial.ReadingOnly(u), conformity.Movement{}))
 }
 
 type vectors struct {
@@ -100,7 +100,7 @@ func assessorOf(t *testing.T, j *trial.Judge, u *float64, b map[string]float64) 
 	p.Measurand = trial.AtNominal
 	full := trial.Budget{Read: decimal(t, b["read"]), Common: decimal(t, b["common"]), ChamberSystematic: decimal(t, b["chamber"]),
 		ChamberRandom: decimal(t, b["weather"]), Frequency: decimal(t, b["frequency"]), Handling: decimal(t, b["handling"])}
-	cov := conformity.Propagate(&p, conformity.Chain(15), full, conformity.Movement{Slope: b["slope"]})
+	cov := conformity.Propagate(&p, conformity.Chain(trial.ISO3159()), full, conformity.Movement{Slope: b["slope"]})
 	return conformity.NewAssessor(j, cov)
 }
 

@@ -76,7 +76,7 @@ func BenchmarkAssess5000(b *testing.B) {
 func BenchmarkHinges5000(b *testing.B) {
 	flat := lot(5000)
 	j := newJudge(b, "1")
-	chain := conformity.Chain(15)
+	chain := conformity.Chain(trial.ISO3159())
 	rates := make([]trial.Rate, 15)
 	var r trial.Result
 	searched, judged := time.Hour, time.Hour

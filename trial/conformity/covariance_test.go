@@ -92,7 +92,7 @@ func setAtChanges() conformity.Layout {
 
 // separate is the layout of case C: every day has its own two readings.
 func separate() conformity.Layout {
-	l := conformity.Chain(15)
+	l := conformity.Chain(trial.ISO3159())
 	for d := range l {
 		l[d].From.Step, l[d].To.Step = 100+2*d, 101+2*d
 	}
@@ -106,7 +106,7 @@ func TestSharedStates(t *testing.T) {
 	}
 	readJSON(t, "published.json", &file)
 	one := trial.ReadingOnly(trial.Ratio(1, 1))
-	cases := map[string]conformity.Layout{"chained_states": conformity.Chain(15),
+	cases := map[string]conformity.Layout{"chained_states": conformity.Chain(trial.ISO3159()),
 		"two_readings_at_each_position_change": setAtChanges(), "independent_rates_sqrt2": separate()}
 	if len(file.Table) != len(figures()) {
 		t.Fatalf("%d rows", len(file.Table))
@@ -120,7 +120,7 @@ func TestSharedStates(t *testing.T) {
 			}
 		}
 	}
-	cov := conformity.Propagate(trial.ISO3159(), conformity.Chain(15), one, conformity.Movement{})
+	cov := conformity.Propagate(trial.ISO3159(), conformity.Chain(trial.ISO3159()), one, conformity.Movement{})
 	f := figures()
 	for _, c := range []struct {
 		a, b string
@@ -142,7 +142,7 @@ func TestFullBudget(t *testing.T) {
 	f := figures()
 	check := func(slope float64, name string, want float64) {
 		t.Helper()
-		cov := conformity.Propagate(p, conformity.Chain(15), b, conformity.Movement{Slope: slope})
+		cov := conformity.Propagate(p, conformity.Chain(trial.ISO3159()), b, conformity.Movement{Slope: slope})
 		if got := math.Sqrt(cov.Of(f[name], f[name])); math.Abs(got-want) > 0.0005 {
 			t.Errorf("u(%s) at slope %v: %.4f, want %.3f", name, slope, got, want)
 		}
@@ -155,7 +155,7 @@ func TestFullBudget(t *testing.T) {
 	check(0.2, "R_single", 0.176)
 	// As performed, temperature inside its tolerance is part of the method (U2).
 	p.Measurand = trial.AsPerformed
-	cov := conformity.Propagate(p, conformity.Chain(15), b, conformity.Movement{Slope: 0.2})
+	cov := conformity.Propagate(p, conformity.Chain(trial.ISO3159()), b, conformity.Movement{Slope: 0.2})
 	if got, want := math.Sqrt(cov.Of(f["M"], f["M"])), math.Sqrt(0.0125*0.02+0.0025/10); math.Abs(got-want) > 1e-12 {
 		t.Errorf("u(M) as performed %v, want %v", got, want)
 	}
@@ -175,7 +175,7 @@ func TestBudgetTerms(t *testing.T) {
 			t.Errorf("%s: %v, want %v", name, got, want)
 		}
 	}
-	chain := conformity.Chain(15)
+	chain := conformity.Chain(trial.ISO3159())
 	none := conformity.Movement{}
 	// U4: a fifth of a second at 2.5 Hz is 0.058 s.
 	close("resolution", of(trial.Budget{Resolution: exact(t, "0.2")}, chain, none, "R_single"), math.Sqrt2*0.2/math.Sqrt(12))
@@ -189,13 +189,13 @@ func TestBudgetTerms(t *testing.T) {
 	// known a rate carries √2 · a/√2.
 	wobble := trial.Budget{Eccentricity: exact(t, "0.4")}
 	close("hand not known", of(wobble, chain, none, "R_single"), 0.4)
-	same := conformity.Chain(15)
+	same := conformity.Chain(trial.ISO3159())
 	for d := range same {
 		same[d].From.HasHand, same[d].To.HasHand = true, true
 	}
 	close("hand at the same mark", of(wobble, same, none, "M"), 0)
 	// U3: one round read by another method.
-	mixed := conformity.Chain(15)
+	mixed := conformity.Chain(trial.ISO3159())
 	mixed[3].To.Method, mixed[4].From.Method = "B", "B"
 	b := trial.Budget{Read: exact(t, "0.1"), Methods: map[string]trial.Exact{"B": exact(t, "0.3")}}
 	close("another method", of(b, mixed, none, "R_single"), math.Sqrt(0.01+0.09))
@@ -208,7 +208,7 @@ func TestBudgetTerms(t *testing.T) {
 // A stretch longer than a day carries the error of a state as less of a rate.
 func TestIntervals(t *testing.T) {
 	t.Parallel()
-	l := conformity.Chain(15)
+	l := conformity.Chain(trial.ISO3159())
 	l[3].Seconds = 2 * trial.SecondsPerDay
 	cov := conformity.Propagate(trial.ISO3159(), l, trial.ReadingOnly(trial.Ratio(1, 1)), conformity.Movement{})
 	if got := cov.At(4, 4); got != 0.5 {
@@ -216,6 +216,12 @@ func TestIntervals(t *testing.T) {
 	}
 	if got := cov.At(4, 5); got != -0.5 {
 		t.Errorf("covariance with the next day %v, want -0.5", got)
+	}
+	p := trial.ISO3159()
+	p.Reading.IntervalS = trial.SecondsPerDay / 2
+	cov = conformity.Propagate(p, conformity.Chain(p), trial.ReadingOnly(trial.Ratio(1, 1)), conformity.Movement{})
+	if got := cov.At(4, 4); got != 8 {
+		t.Errorf("variance over half a day %v, want 8", got)
 	}
 }
 

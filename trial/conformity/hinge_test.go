@@ -81,7 +81,7 @@ func TestHingesAgainstEveryChange(t *testing.T) {
 			rates[d] = trial.RateOf(r[d+1])
 		}
 		state, change, ok := smallest(r, most)
-		list := conformity.Hinges(j, rates, conformity.Chain(15))
+		list := conformity.Hinges(j, rates, conformity.Chain(trial.ISO3159()))
 		if ok != (len(list) > 0 && max(list[0].Change, -list[0].Change) <= most) {
 			t.Fatalf("%v: every change finds %d at %d (%v), hinges %+v", r, change, state, ok, list)
 		}
@@ -108,18 +108,18 @@ func TestHingeNamesTheCriterion(t *testing.T) {
 		rates[d] = trial.RateOf(0)
 	}
 	rates[12] = trial.RateOf(17_700) // C is 0.59: state 10 to 13 by 0.301 s turn it, 10 first
-	h := conformity.Hinges(j, rates, conformity.Chain(15))[0]
+	h := conformity.Hinges(j, rates, conformity.Chain(trial.ISO3159()))[0]
 	if h.Reading.Step != 10 || h.Change != 301 || j.Programme().Criteria[h.Criterion].Symbol != "C" || h.To != trial.Fail {
 		t.Errorf("%+v", h)
 	}
 	rates[12] = trial.RateOf(18_300)
-	h = conformity.Hinges(j, rates, conformity.Chain(15))[0]
+	h = conformity.Hinges(j, rates, conformity.Chain(trial.ISO3159()))[0]
 	if h.Reading.Step != 10 || h.Change != -300 || j.Programme().Criteria[h.Criterion].Symbol != "C" || h.To != trial.Pass {
 		t.Errorf("back inside: %+v", h)
 	}
 	// A blank day leaves the movement open: pass is out of reach, not failing is the flip.
 	rates[14] = trial.Rate{}
-	if h := conformity.Hinges(j, rates, conformity.Chain(15))[0]; h.To != trial.Open || h.Change != -300 {
+	if h := conformity.Hinges(j, rates, conformity.Chain(trial.ISO3159()))[0]; h.To != trial.Open || h.Change != -300 {
 		t.Errorf("open: %+v", h)
 	}
 }
@@ -133,7 +133,7 @@ func TestNoHinge(t *testing.T) {
 		rates[d] = trial.RateOf(0)
 	}
 	rates[12], rates[14] = trial.RateOf(40_000), trial.RateOf(40_000)
-	if list := conformity.Hinges(j, rates, conformity.Chain(15)); len(list) != 0 {
+	if list := conformity.Hinges(j, rates, conformity.Chain(trial.ISO3159())); len(list) != 0 {
 		t.Errorf("%+v", list[0])
 	}
 }
@@ -148,7 +148,7 @@ func TestHingeFoundAndLeft(t *testing.T) {
 		rates[d] = trial.RateOf(0)
 	}
 	rates[12] = trial.RateOf(17_700)
-	l := conformity.Chain(15)
+	l := conformity.Chain(trial.ISO3159())
 	l[12].From = conformity.Reading{Step: 12, Left: true}
 	l[12].Seconds = 2 * trial.SecondsPerDay
 	var asLeft, asFound *conformity.Hinge
@@ -183,7 +183,7 @@ func TestHingeMixed(t *testing.T) {
 	for d := range rates {
 		rates[d] = trial.RateOf(5_800)
 	}
-	h := conformity.Hinges(j, rates, conformity.Chain(15))
+	h := conformity.Hinges(j, rates, conformity.Chain(trial.ISO3159()))
 	if len(h) == 0 || h[0].Change != -2_001 || h[0].Reading.Step != 0 || h[0].To != trial.Fail {
 		t.Errorf("%+v", h)
 	}

@@ -26,12 +26,12 @@ type Reading struct {
 // same tells one reading from another.
 func (r Reading) same(o Reading) bool { return r.Step == o.Step && r.Left == o.Left }
 
-// Chain is the layout of one shared reading a day at 24 h: day d from reading d-1 to reading d. It
-// is what `ratehouse judge` assumes for rates and for states alike.
-func Chain(days int) Layout {
-	l := make(Layout, days)
+// Chain is the layout of one shared reading a programme day, as far apart as the programme reads: day
+// d from reading d-1 to reading d. It is what `ratehouse judge` assumes for rates and for states alike.
+func Chain(p *trial.Programme) Layout {
+	l := make(Layout, len(p.Days))
 	for d := range l {
-		l[d] = Stretch{From: Reading{Step: d}, To: Reading{Step: d + 1}, Seconds: trial.SecondsPerDay}
+		l[d] = Stretch{From: Reading{Step: d}, To: Reading{Step: d + 1}, Seconds: p.Reading.IntervalS}
 	}
 	return l
 }
@@ -39,7 +39,7 @@ func Chain(days int) Layout {
 // Recorded is the layout of readings as they were recorded, by the same rules as
 // trial.Programme.Assemble: a stretch starts at the state as left, if the hands were set, else at
 // the one as found; when several steps close one day the latest counts. A day with a typed rate
-// only is marked Typed and taken as one of a chain at 24 h.
+// only is marked Typed and taken as one of a Chain.
 func Recorded(p *trial.Programme, steps []trial.Step, cells []trial.Cell) Layout {
 	l := make(Layout, len(p.Days))
 	for k := range min(len(steps), len(cells)) {
@@ -47,18 +47,18 @@ func Recorded(p *trial.Programme, steps []trial.Step, cells []trial.Cell) Layout
 		if d < 1 || d > len(l) || k == 0 {
 			continue
 		}
-		l[d-1] = recorded(k, cells[k-1], cells[k])
+		l[d-1] = recorded(k, cells[k-1], cells[k], p.Reading.IntervalS)
 	}
 	return l
 }
 
-func recorded(k int, from, to trial.Cell) Stretch {
+func recorded(k int, from, to trial.Cell, interval int64) Stretch {
 	s := Stretch{From: reading(k-1, from.HasLeft, from), To: reading(k, false, to)}
 	switch {
 	case to.HasFound && (from.HasLeft || from.HasFound) && from.At != 0 && to.At > from.At:
 		s.Seconds = to.At - from.At
 	case to.HasRate:
-		s.Seconds, s.Typed = trial.SecondsPerDay, true
+		s.Seconds, s.Typed = interval, true
 		s.From, s.To = Reading{Step: k - 1}, Reading{Step: k}
 	default:
 		return Stretch{}
