@@ -1,7 +1,9 @@
 package conformity
 
 import (
+	"fmt"
 	"math"
+	"slices"
 
 	"ratehouse/trial"
 )
@@ -64,38 +66,54 @@ func (a *Assessor) Uncertainty(rates []float64, i int) (u float64, ok bool) {
 	return 0, false
 }
 
-// Decision is what a guarded rule says of one movement.
-type Decision struct {
-	Accepted bool // every limited criterion lies within its acceptance interval
-	// Refused lists the criteria outside it, by index; those also outside the limits themselves are
-	// in Failed. The others passed by less than their guard band: a conditional fail of ILAC-G8 4.2
-	// (non-binary statement).
-	Refused, Failed []int
+// greatestUncertainty is the most that Uncertainty of criterion i can be, whatever the rates: what a
+// limit fixed beforehand is guarded by. ok is false for criteria no linear figure describes.
+func (a *Assessor) greatestUncertainty(i int) (u float64, ok bool) {
+	p := &a.region.parts[i]
+	if p.measure == total {
+		return spread(p.forms), true
+	}
+	for k := range p.forms {
+		u = math.Max(u, p.forms[k].sigma)
+	}
+	return u, p.measure != computed
 }
 
-// Decide applies the programme's decision rule to a movement whose limited criteria are all decided;
-// ok is false if one is not, or has no uncertainty to guard it by. Comparisons are exact; the guard
-// band of each criterion is GuardBand of its Uncertainty.
-func (a *Assessor) Decide(rates []float64, r *trial.Result) (d Decision, ok bool) {
-	for i := range r.Values {
-		l := a.judge.Limit(i)
-		if !l.Any() {
+// Guarded is the assessor's programme with the limits of its category drawn in to acceptance limits
+// by its guarded decision rule, and the simple rule to judge by: a judge of it accepts what the
+// guarded rule accepts, exactly, open movements and unreachable criteria included. The guard band of
+// a magnitude is taken from the most uncertain linear figure it can be, so that it is one number for
+// all movements (common practice, no source: JCGM 106 treats normal figures). The error is a
+// *trial.Fault: limits that have crossed accept nothing, and a criterion no linear figure describes
+// has no uncertainty to be guarded by. A programme with the simple rule is returned as it is.
+func (a *Assessor) Guarded() (*trial.Programme, error) {
+	p := a.judge.Programme()
+	if p.Decision.Rule == trial.Simple {
+		return p, nil
+	}
+	out := *p
+	out.Decision = trial.Decision{Rule: trial.Simple}
+	out.Criteria = slices.Clone(p.Criteria)
+	category := a.judge.Category()
+	for i := range out.Criteria {
+		limit := a.judge.Limit(i)
+		if !limit.Any() {
 			continue
 		}
-		u, known := a.Uncertainty(rates, i)
-		w, stated := GuardBand(a.judge.Programme().Decision, u)
-		guarded := a.judge.Programme().Decision.Rule == trial.Guarded
-		if !r.Values[i].Known || !stated || guarded && !known {
-			return Decision{}, false
+		path := fmt.Sprintf("criteria[%d].limits.%s", i, category)
+		u, known := a.greatestUncertainty(i)
+		w, stated := GuardBand(p.Decision, u)
+		if !known || !stated {
+			return nil, &trial.Fault{Path: path, Code: "not_built", Args: []string{"a guard band for " + string(p.Criteria[i].Formula.Kind)}}
 		}
-		accept, possible := Acceptance(l, w)
-		if !possible || !accept.Contains(r.Values[i].Exact) {
-			d.Refused = append(d.Refused, i)
+		accept, possible := Acceptance(limit, w)
+		if !possible || magnitude(p.Criteria[i].Formula.Kind) && accept.HasMax && accept.Max.Sign() < 0 {
+			return nil, &trial.Fault{Path: path, Code: "crossed", Args: []string{accept.Min.String(), accept.Max.String()}}
 		}
-		if r.Values[i].Outcome == trial.Outside {
-			d.Failed = append(d.Failed, i)
+		if magnitude(p.Criteria[i].Formula.Kind) && limit.HasMin && limit.Min.Sign() <= 0 {
+			accept.Min = limit.Min // a magnitude is never below it, so nothing is to be guarded
 		}
+		out.Criteria[i].Limits = map[string]trial.Limit{category: accept}
 	}
-	d.Accepted = len(d.Refused) == 0
-	return d, true
+	return &out, nil
 }

@@ -110,37 +110,63 @@ func TestAcceptance(t *testing.T) {
 	}
 }
 
-// M of 5.99 and u_s of 0.1 passes the simple rule, and the guarded one refuses it.
-func TestDecide(t *testing.T) {
-	t.Parallel()
-	rates := make([]string, 15)
-	for d := range rates {
-		rates[d] = "5.99"
+// guarded is the built-in programme judged with a guard band of so many U.
+func guarded(t *testing.T, guard, u string) (*trial.Programme, error) {
+	t.Helper()
+	p := trial.ISO3159()
+	p.Decision = trial.Decision{Rule: trial.Guarded, Guard: exact(t, guard)}
+	j, err := trial.NewJudge(p, "1")
+	if err != nil {
+		t.Fatal(err)
 	}
-	m := measure(t, rates)
-	for _, c := range []struct {
-		guard    string
-		accepted bool
-	}{{"0", true}, {"0.3", true}, {"0.36", false}, {"1", false}} { // U(M) = 0.0282843: 0.01 is 0.3536 of it
-		p := trial.ISO3159()
-		p.Decision = trial.Decision{Rule: trial.Guarded, Guard: exact(t, c.guard)}
+	return chained(j, exact(t, u)).Guarded()
+}
+
+// M of 5.99 and u_s of 0.1: U(M) is 0.0282843, so 0.01 s/d to the limit are 0.3536 of it.
+func TestGuarded(t *testing.T) {
+	t.Parallel()
+	rates := make([]trial.Rate, 15)
+	for d := range rates {
+		rates[d] = trial.RateOf(5_990)
+	}
+	for guard, want := range map[string]trial.Verdict{"0": trial.Pass, "0.3": trial.Pass, "0.36": trial.Fail, "1": trial.Fail} {
+		p, err := guarded(t, guard, "0.1")
+		if err != nil {
+			t.Fatal(err)
+		}
 		j, err := trial.NewJudge(p, "1")
 		if err != nil {
 			t.Fatal(err)
 		}
 		var r trial.Result
-		j.Rates(m.exact, &r)
-		d, ok := chained(j, exact(t, "0.1")).Decide(m.rates, &r)
-		if !ok || d.Accepted != c.accepted || len(d.Failed) != 0 || c.accepted != (len(d.Refused) == 0) {
-			t.Errorf("guard %s: %+v %v", c.guard, d, ok)
+		if j.Rates(rates, &r); r.Verdict != want {
+			t.Errorf("guard %s: %s, want %s", guard, r.Verdict, want)
+		}
+	}
+	p, err := guarded(t, "1", "0.1")
+	if err != nil {
+		t.Fatal(err)
+	}
+	// Vmax: 2·√6·0.1 = 0.4898979 rounded up; V: 2·√38/5·0.1 = 0.2465766; R: 2·√2.5·0.1 = 0.3162278.
+	for symbol, want := range map[string][2]string{"Vmax": {"0", "4.510102"}, "V": {"0", "1.753423"}, "R": {"-4.683772", "4.683772"}, "M": {"-3.971715", "5.971715"}} {
+		c, _ := p.Criterion(symbol)
+		l := c.Limits["1"]
+		if l.Max.Cmp(exact(t, want[1])) != 0 || l.HasMin && l.Min.Cmp(exact(t, want[0])) != 0 {
+			t.Errorf("%s: %s to %s, want %s", symbol, l.Min.Decimal(6), l.Max.Decimal(6), want)
+		}
+	}
+	if trial.ISO3159().Criteria[0].Limits["1"].Max.Cmp(exact(t, "6")) != 0 || len(p.Criteria[0].Limits) != 1 {
+		t.Error("the programme itself was changed, or another category kept")
+	}
+	for guard, want := range map[string]string{"20": "criteria[1].limits.1", "1": ""} {
+		_, err := guarded(t, guard, "0.1")
+		if fault, ok := err.(*trial.Fault); want != "" && (!ok || fault.Path != want || fault.Code != "crossed") || want == "" && err != nil {
+			t.Errorf("guard %s: %v", guard, err)
 		}
 	}
 	j := newJudge(t, "1")
-	var r trial.Result
-	m.exact[0] = trial.Rate{}
-	j.Rates(m.exact, &r)
-	if _, ok := chained(j, exact(t, "0.1")).Decide(m.rates, &r); ok {
-		t.Error("decided with a blank day")
+	if p, err := chained(j, exact(t, "0.1")).Guarded(); err != nil || p != j.Programme() {
+		t.Errorf("simple acceptance: %v", err)
 	}
 }
 
