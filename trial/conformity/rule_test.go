@@ -129,7 +129,7 @@ func TestGuarded(t *testing.T) {
 	for d := range rates {
 		rates[d] = trial.RateOf(5_990)
 	}
-	for guard, want := range map[string]trial.Verdict{"0": trial.Pass, "0.3": trial.Pass, "0.36": trial.Fail, "1": trial.Fail} {
+	for guard, want := range map[string]trial.Verdict{"0.1": trial.Pass, "0.3": trial.Pass, "0.36": trial.Fail, "1": trial.Fail} {
 		p, err := guarded(t, guard, "0.1")
 		if err != nil {
 			t.Fatal(err)
