@@ -3,6 +3,7 @@ package main
 import (
 	"encoding/json"
 	"math"
+	"math/rand/v2"
 	"os"
 	"path/filepath"
 	"strconv"
@@ -98,13 +99,28 @@ func TestJudgeUncertaintyValue(t *testing.T) {
 // At a limit a probability is one half however small the uncertainty: differences are exact.
 func TestJudgeUncertaintyAtTheLimit(t *testing.T) {
 	t.Parallel()
-	days := map[int]string{}
-	for d, s := range []string{"9.7", "5.7", "6.0", "8.3", "4.8", "10.0", "2.6", "1.2", "6.2", "5.5"} { // M is 6
-		days[d+1] = s
+	rng := rand.New(rand.NewPCG(60, 60))
+	input := header + "\n"
+	for n := range 50 {
+		days, sum := map[int]string{}, int64(0)
+		for d := 1; d <= 10; d++ {
+			tenths := rng.Int64N(100)
+			if sum += tenths; d == 10 { // M is 6
+				tenths += 600 - sum
+			}
+			days[d] = strconv.FormatFloat(float64(tenths)/10, 'f', 1, 64)
+		}
+		input += row("A"+strconv.Itoa(n), "1", days) + "\n"
 	}
-	stdout, _, _ := runWith(t, header+"\n"+row("A", "1", days)+"\n", "judge", "-uncertainty", "0.000000001")
-	if got := strings.Split(strings.Split(stdout, "\n")[1], ",")[12]; got != "0.500000" {
-		t.Errorf("pM %s", got)
+	stdout, _, _ := runWith(t, input, "judge", "-uncertainty", "0.000000001")
+	lines := strings.Split(strings.TrimSpace(stdout), "\n")
+	for _, line := range lines[1:] {
+		if got := strings.Split(line, ",")[12]; got != "0.500000" {
+			t.Errorf("pM %s: %s", got, line)
+		}
+	}
+	if len(lines) != 51 {
+		t.Errorf("%d lines", len(lines))
 	}
 }
 

@@ -35,7 +35,7 @@ func lot(n int) [][]int64 {
 // with judging the same movements, in the same run.
 func BenchmarkAssess5000(b *testing.B) {
 	flat := lot(5000)
-	for _, u := range []string{"0.05", "0.1", "0.3"} {
+	for _, u := range []string{"0.1", "0.3", "1"} {
 		b.Run("u="+u, func(b *testing.B) {
 			j := newJudge(b, "1")
 			a := chained(j, exact(b, u))

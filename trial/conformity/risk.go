@@ -1,6 +1,7 @@
 package conformity
 
 import (
+	"math"
 	"slices"
 
 	"gonum.org/v1/gonum/integrate/quad"
@@ -18,6 +19,15 @@ func AcceptanceLimitFor(p float64) float64 { return quantile(p) }
 // Production is what is known of a figure before measuring: normal about Mean with standard
 // deviation SD over the items of a production, by calibre for instance.
 type Production struct{ Mean, SD float64 }
+
+// Probability is that of one item's true value within [lo, hi] after measuring y with standard
+// uncertainty u, knowing the production it comes from: normal about the mean of both, weighted by
+// the inverse of their variances. With a production much wider than u it is Probability. Needs u and
+// SD above 0. Source: JCGM 106:2012 6.3 and 7.2 (from memory).
+func (p Production) Probability(y, u, lo, hi float64) float64 {
+	known, seen := 1/(p.SD*p.SD), 1/(u*u)
+	return Probability((known*p.Mean+seen*y)/(known+seen), 1/math.Sqrt(known+seen), lo, hi)
+}
 
 // Risks are those of a whole production under a rule of acceptance.
 type Risks struct {

@@ -187,3 +187,23 @@ func TestUncertainty(t *testing.T) {
 		t.Errorf("u(V) %v %v, want %v", u, ok, math.Sqrt(38./25))
 	}
 }
+
+// With a prior: Bayes' rule by plain summing over true values.
+func TestProbabilityOfProduction(t *testing.T) {
+	t.Parallel()
+	p := conformity.Production{Mean: 1, SD: 0.5}
+	const y, u, lo, hi = 1.9, 0.3, -4, 1.7
+	gauss := func(x, m, s float64) float64 { return math.Exp(-(x - m) * (x - m) / (2 * s * s)) }
+	var inside, all float64
+	const step = 0.0001
+	for x := -4 + step/2; x < 6; x += step {
+		w := gauss(x, p.Mean, p.SD) * gauss(y, x, u)
+		all += w
+		if x <= hi {
+			inside += w
+		}
+	}
+	within(t, "posterior", p.Probability(y, u, lo, hi), inside/all, 1e-7)
+	wide := conformity.Production{Mean: 0, SD: 1e6}
+	within(t, "a prior that says nothing", wide.Probability(y, u, lo, hi), conformity.Probability(y, u, lo, hi), 1e-9)
+}
