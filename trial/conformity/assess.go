@@ -48,7 +48,7 @@ func spread(forms []form) float64 {
 // measure notes the covariance of a form with the rates.
 func (a *Assessor) measure(f *form) {
 	f.cov = a.cov.times(f.w)
-	f.close()
+	a.close(f)
 }
 
 // Chance is the probability that one criterion, or all, truly conforms.
@@ -235,7 +235,7 @@ func (a *Assessor) collectFolds(p *part, rates []float64) standing {
 			free++
 		}
 	}
-	whole.close()
+	a.close(whole)
 	margin := p.hi - dot(whole.w, rates)
 	switch {
 	case free == 0:
@@ -253,7 +253,7 @@ func (a *Assessor) collectFolds(p *part, rates []float64) standing {
 // foldRows appends the members of the last fold.
 func (a *Assessor) foldRows(p *part, rates []float64, fixed *form) {
 	n := len(a.folds)
-	fixed.close()
+	a.close(fixed)
 	bound := p.hi
 	if fixed.sigma > 0 {
 		bound = math.Inf(1)
@@ -286,5 +286,16 @@ func (f *form) add(g *form, y float64) {
 	}
 }
 
-// close computes the standard uncertainty.
-func (f *form) close() { f.sigma = math.Sqrt(math.Max(0, dot(f.w, f.cov))) }
+// close computes the standard uncertainty of a form. What is left where terms cancel is rounding, and
+// counts as nothing.
+func (a *Assessor) close(f *form) {
+	var apart float64 // the variance without covariances
+	for d, w := range f.w {
+		apart += w * w * a.cov.At(d+1, d+1)
+	}
+	v := dot(f.w, f.cov)
+	if v < 1e-13*apart {
+		v = 0
+	}
+	f.sigma = math.Sqrt(v)
+}

@@ -60,7 +60,7 @@ func (a *Assessor) Uncertainty(rates []float64, i int) (u float64, ok bool) {
 		for k := range p.forms {
 			f.add(&p.forms[k], dot(p.forms[k].w, rates))
 		}
-		f.close()
+		a.close(f)
 		return f.sigma, true
 	}
 	return 0, false
