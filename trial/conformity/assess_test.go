@@ -241,18 +241,18 @@ func TestSameInputSameOutput(t *testing.T) {
 }
 
 // Where every term of the budget cancels a limit met exactly is met for certain: the frequency of the
-// reference enters M in full and D not at all.
+// reference enters M in full and P not at all.
 func TestNothingLeft(t *testing.T) {
 	t.Parallel()
 	j := newJudge(t, "1")
 	b := trial.Budget{Frequency: exact(t, "0.1")}
 	a := conformity.NewAssessor(j, conformity.Propagate(j.Programme(), conformity.Chain(j.Programme()), b, conformity.Movement{}))
-	got := assess(j, a, measure(t, []string{"8.3", "8.3", "6.1", "6.1", "6.9", "6.9", "8.4", "8.4", "0.3", "0.3", "1", "1", "1", "1", "8.3"}))
-	if got.Each[3].P != 1 || math.Abs(got.Each[0].P-0.5) > 1e-12 || math.Abs(got.All.P-0.5) > 1e-12 {
-		t.Errorf("D on its limit of 8: %+v; M on its limit of 6: %+v; all %+v", got.Each[3], got.Each[0], got.All)
+	got := assess(j, a, measure(t, []string{"6", "6", "6", "6", "-4", "-4", "11", "11", "11", "11", "6", "6", "6", "6", "6"}))
+	if got.Each[4].P != 1 || math.Abs(got.Each[0].P-0.5) > 1e-12 || math.Abs(got.All.P-0.5) > 1e-12 {
+		t.Errorf("P on its limit of 10: %+v; M on its limit of 6: %+v; all %+v", got.Each[4], got.Each[0], got.All)
 	}
-	got = assess(j, a, measure(t, []string{"8.301", "8.3", "1", "1", "1", "1", "1", "1", "0.3", "0.3", "1", "1", "1", "1", "8.3"}))
-	if got.Each[3].P != 0 || got.All.P != 0 {
-		t.Errorf("D beyond its limit: %+v", got.Each[3])
+	got = assess(j, a, measure(t, []string{"6", "6", "6", "6", "-4.01", "-4.01", "11.01", "11.01", "11", "11", "6", "6", "6", "6", "6"}))
+	if got.Each[4].P != 0 || got.All.P != 0 {
+		t.Errorf("P beyond its limit: %+v", got.Each[4])
 	}
 }
