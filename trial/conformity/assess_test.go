@@ -241,18 +241,23 @@ func TestSameInputSameOutput(t *testing.T) {
 }
 
 // Where every term of the budget cancels a limit met exactly is met for certain: the frequency of the
-// reference enters M in full and P not at all.
+// reference enters M in full and a difference not at all, though its weights of a third and an eleventh
+// leave rounding.
 func TestNothingLeft(t *testing.T) {
 	t.Parallel()
-	j := newJudge(t, "1")
-	b := trial.Budget{Frequency: exact(t, "0.1")}
-	a := conformity.NewAssessor(j, conformity.Propagate(j.Programme(), conformity.Chain(j.Programme()), b, conformity.Movement{}))
-	got := assess(j, a, measure(t, []string{"6", "6", "6", "6", "-4", "-4", "11", "11", "11", "11", "6", "6", "6", "6", "6"}))
-	if got.Each[4].P != 1 || math.Abs(got.Each[0].P-0.5) > 1e-12 || math.Abs(got.All.P-0.5) > 1e-12 {
-		t.Errorf("P on its limit of 10: %+v; M on its limit of 6: %+v; all %+v", got.Each[4], got.Each[0], got.All)
+	p := trial.ISO3159()
+	p.Criteria = p.Criteria[3:4]
+	p.Criteria[0].Formula = trial.Formula{Kind: trial.Difference, Of: []int{1, 2, 3}, From: []int{4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 14}}
+	j, err := trial.NewJudge(p, "1")
+	if err != nil {
+		t.Fatal(err)
 	}
-	got = assess(j, a, measure(t, []string{"6", "6", "6", "6", "-4.01", "-4.01", "11.01", "11.01", "11", "11", "6", "6", "6", "6", "6"}))
-	if got.Each[4].P != 0 || got.All.P != 0 {
-		t.Errorf("P beyond its limit: %+v", got.Each[4])
+	b := trial.Budget{Frequency: exact(t, "0.1")}
+	a := conformity.NewAssessor(j, conformity.Propagate(p, conformity.Chain(p), b, conformity.Movement{}))
+	for day3, want := range map[string]float64{"8": 1, "8.003": 0} {
+		got := assess(j, a, measure(t, []string{"8", "8", day3, "0", "0", "0", "0", "0", "0", "0", "0", "0", "0", "0", "0"}))
+		if got.Each[0].P != want || got.All.P != want {
+			t.Errorf("difference of 8, day 3 at %s: %+v, all %+v", day3, got.Each[0], got.All)
+		}
 	}
 }
