@@ -15,6 +15,7 @@ type Assessor struct {
 	space  polytope
 	joint  []row
 	folds  []fold
+	whole  whole
 	sample sample
 }
 
@@ -93,52 +94,66 @@ const far = 6
 // (domain notes 5.3), and near zero a magnitude comes out too large (5.2, folding).
 func (a *Assessor) Assess(rates []float64, r *trial.Result, out *Chances) {
 	out.Each = append(out.Each[:0], make([]Chance, len(r.Values))...)
-	out.All = Chance{}
-	a.joint, a.folds = a.joint[:0], a.folds[:0]
-	all, sampled, limited, impossible := true, false, false, false
-	active, alone := 0, 1.0 // criteria not certain to hold, and the last one's probability
+	a.joint, a.folds, a.whole = a.joint[:0], a.folds[:0], whole{p: 1}
+	decided, limited := true, false
 	for i := range r.Values {
-		p := &a.region.parts[i]
 		switch {
-		case p.shape == unlimited:
+		case a.region.parts[i].shape == unlimited:
 			continue
 		case !r.Values[i].Known:
-			all = false
+			decided = false
 			continue
 		}
 		limited = true
-		begin, folds := len(a.joint), len(a.folds)
-		switch a.collect(i, rates, r) {
-		case outside:
-			impossible = true
-			out.Each[i] = Chance{0, true}
-			a.joint, a.folds = a.joint[:begin], a.folds[:folds]
-			continue
-		case unclear:
-			sampled = true
-			out.Each[i] = Chance{a.sampled(rates, i), true}
-			a.joint, a.folds = a.joint[:begin], a.folds[:folds]
-			continue
-		}
-		out.Each[i] = Chance{a.integrate(a.joint[begin:], rates, i), true}
-		if begin < len(a.joint) {
-			alone = out.Each[i].P
-			active++
-		}
+		out.Each[i] = Chance{a.one(i, rates, r), true}
 	}
-	if !all || !limited {
-		return
+	out.All = Chance{}
+	if decided && limited {
+		out.All = Chance{a.together(rates), true}
 	}
-	out.All.Known = true
+}
+
+// whole is what single criteria say of all together.
+type whole struct {
+	impossible bool    // one is certainly outside
+	sampled    bool    // one is not described by rows
+	active     int     // criteria not certain to hold
+	p          float64 // probability of the last of those
+}
+
+// one is the probability of criterion i; its conditions stay in joint.
+func (a *Assessor) one(i int, rates []float64, r *trial.Result) float64 {
+	rows, folds := len(a.joint), len(a.folds)
+	stand := a.collect(i, rates, r)
+	if stand != near {
+		a.joint, a.folds = a.joint[:rows], a.folds[:folds]
+	}
 	switch {
-	case impossible:
-	case active <= 1 && !sampled:
-		out.All.P = alone
-	case sampled:
-		out.All.P = a.sampled(rates, everything)
-	default:
-		out.All.P = a.integrate(a.joint, rates, everything)
+	case stand == outside:
+		a.whole.impossible = true
+		return 0
+	case stand == unclear:
+		a.whole.sampled = true
+		return a.sampled(rates, i)
+	case len(a.joint) == rows:
+		return 1
 	}
+	a.whole.active++
+	a.whole.p = a.integrate(a.joint[rows:], rates, i)
+	return a.whole.p
+}
+
+// together is the probability of all criteria.
+func (a *Assessor) together(rates []float64) float64 {
+	switch {
+	case a.whole.impossible:
+		return 0
+	case a.whole.sampled:
+		return a.sampled(rates, everything)
+	case a.whole.active <= 1:
+		return a.whole.p
+	}
+	return a.integrate(a.joint, rates, everything)
 }
 
 // everything stands for all criteria instead of one.
