@@ -46,6 +46,27 @@ func RateBetween(from, to State, seconds int64) Rate {
 	return Rate{diff * SecondsPerDay, seconds}
 }
 
+// Shifted is the rate after one of the two states that bound it moved by so many thousandths of a
+// second over an interval of so many whole seconds: r + by · 86,400 / seconds. A rate not read stays
+// so; without a positive interval, or where numbers outgrow 64 bits, the result is the zero Rate.
+func (r Rate) Shifted(by, seconds int64) Rate {
+	shift := RateBetween(0, State(by), seconds)
+	if r.den == 0 || shift.den == 0 {
+		return Rate{}
+	}
+	if r.den == shift.den {
+		return Rate{r.num + shift.num, r.den}
+	}
+	a, ok1 := mul64(r.num, shift.den)
+	b, ok2 := mul64(shift.num, r.den)
+	den, ok3 := mul64(r.den, shift.den)
+	const half = 1 << 62
+	if !ok1 || !ok2 || !ok3 || abs64(a) > half || abs64(b) > half {
+		return Rate{}
+	}
+	return Rate{a + b, den}
+}
+
 // Known tells whether the rate was read at all.
 func (r Rate) Known() bool { return r.den != 0 }
 

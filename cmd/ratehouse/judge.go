@@ -22,6 +22,7 @@ func runJudge(_ context.Context, p program, args []string) int {
 type judgeJob struct {
 	prog           *trial.Programme
 	states         bool
+	budget         *trial.Budget // nil: no probabilities are wanted
 	format         sheet.VerdictFormat
 	stdout, stderr io.Writer
 }
@@ -35,6 +36,7 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 	code := flags.String("programme", "iso3159", "")
 	states := flags.Bool("states", false, "")
 	uncertainty := flags.String("uncertainty", "", "")
+	budget := flags.String("budget", "", "")
 	format := flags.String("format", "csv", "")
 	if err := flags.Parse(args); errors.Is(err, flag.ErrHelp) {
 		return exitDone
@@ -42,9 +44,10 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 		return exitUsage
 	}
 	job := judgeJob{states: *states, format: sheet.VerdictFormat(*format), stdout: stdout, stderr: stderr}
+	if err := job.wantDoubt(flags, *uncertainty, *budget); err != nil {
+		return job.fail(err.Error())
+	}
 	switch {
-	case *uncertainty != "":
-		return job.fail("-uncertainty: not built yet")
 	case job.format != sheet.CSV && job.format != sheet.JSON:
 		return job.fail(fmt.Sprintf("-format %q: csv and json are known", *format))
 	case flags.NArg() > 1:
@@ -89,7 +92,10 @@ another programme there are as many columns d as it has days.
   -states          rows are serial,category,s0..s15: states in s, one a programme
                    day, as far apart as the programme reads (24 h)
   -format FORMAT   csv (default) or json, one object a line
-  -uncertainty U   standard uncertainty of one state reading in s (not built yet)
+  -uncertainty U   standard uncertainty of one state reading in s: adds pM, pV, ... pAll, the
+                   probability that true values lie within limits (reading only: other
+                   sources of uncertainty are not in it)
+  -budget FILE     the same for a whole uncertainty budget, a JSON file
 
 Refused rows are named on standard error; the exit code is then 1.
 
@@ -122,8 +128,12 @@ func (j judgeJob) run(in io.Reader) int {
 			return j.fail(err.Error())
 		}
 	}
-	verdicts := sheet.NewVerdicts(j.stdout, j.prog, j.format, movements.HasCalibre)
-	refused, err := j.rows(movements, judges, verdicts)
+	open, doubts := sheet.NewVerdicts, j.doubt(judges)
+	if doubts != nil {
+		open = sheet.NewVerdictsWithChances
+	}
+	verdicts := open(j.stdout, j.prog, j.format, movements.HasCalibre)
+	refused, err := j.rows(movements, judges, doubts, verdicts)
 	if closing := verdicts.Close(); closing != nil {
 		return j.fail("cannot write: " + closing.Error())
 	}
@@ -137,7 +147,7 @@ func (j judgeJob) run(in io.Reader) int {
 }
 
 // rows judges row after row. An error is the reader's: the writer keeps its own until Close.
-func (j judgeJob) rows(movements *sheet.Movements, judges []*trial.Judge, verdicts *sheet.Verdicts) (refused bool, err error) {
+func (j judgeJob) rows(movements *sheet.Movements, judges []*trial.Judge, doubts *doubt, verdicts *sheet.Verdicts) (refused bool, err error) {
 	results := make([]trial.Result, len(judges))
 	for {
 		m, fault, err := movements.Next()
@@ -153,6 +163,9 @@ func (j judgeJob) rows(movements *sheet.Movements, judges []*trial.Judge, verdic
 		}
 		result := &results[m.Category]
 		judges[m.Category].MilliLong(m.Rates, m.Known, result)
+		if doubts != nil {
+			doubts.add(m, result, verdicts)
+		}
 		category := j.prog.Categories[m.Category].Code
 		if verdicts.Write(m.Serial, []byte(category), m.Calibre, result) != nil {
 			return refused, nil

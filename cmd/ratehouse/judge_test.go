@@ -367,7 +367,6 @@ func TestJudgeUsage(t *testing.T) {
 		args []string
 		want string
 	}{
-		{[]string{"judge", "-uncertainty", "0.1"}, "ratehouse judge: -uncertainty: not built yet\n"},
 		{[]string{"judge", "-programme", "winter.json"}, "ratehouse judge: -programme winter.json: neither a built-in programme (iso3159, contest, weekly) nor a file\n"},
 		{[]string{"judge", "-format", "xml"}, "ratehouse judge: -format \"xml\": csv and json are known\n"},
 		{[]string{"judge", "a", "b"}, "ratehouse judge: one file at a time, and flags stand before it\n"},

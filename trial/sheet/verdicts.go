@@ -18,7 +18,8 @@ type Verdicts struct {
 	json    bool
 	calibre bool
 	symbols []string
-	keys    [][]byte // JSON: the text before each value
+	keys    [][]byte  // JSON: the text before each value
+	chances []float64 // of the next movement; nil: no such columns
 	err     error
 }
 
@@ -33,13 +34,22 @@ const (
 
 // NewVerdicts makes a writer and, for CSV, writes the header. extra names columns that come last.
 func NewVerdicts(w io.Writer, p *trial.Programme, format VerdictFormat, calibre bool, extra ...string) *Verdicts {
-	v := &Verdicts{w: w, json: format == JSON, calibre: calibre, buf: make([]byte, 0, 1<<16)}
+	v := &Verdicts{}
+	v.begin(w, p, format, calibre, extra)
+	return v
+}
+
+func (v *Verdicts) begin(w io.Writer, p *trial.Programme, format VerdictFormat, calibre bool, extra []string) {
+	v.w, v.json, v.calibre, v.buf = w, format == JSON, calibre, make([]byte, 0, 1<<16)
 	names := []string{"serial", "category", "verdict"}
 	for _, c := range p.Criteria {
 		v.symbols = append(v.symbols, c.Symbol)
 		names = append(names, c.Symbol)
 	}
 	names = append(names, "failed", "unreachable")
+	if v.chances != nil {
+		names = append(names, chanceNames(p)...)
+	}
 	if calibre {
 		names = append(names, "calibre")
 	}
@@ -57,7 +67,6 @@ func NewVerdicts(w io.Writer, p *trial.Programme, format VerdictFormat, calibre 
 	if !v.json {
 		v.buf = append(v.buf, '\n')
 	}
-	return v
 }
 
 // Write writes one movement. extra must match the columns named at the start. The first error of
@@ -77,7 +86,7 @@ func (v *Verdicts) Write(serial, category, calibre []byte, r *trial.Result, extr
 	at := 3 + len(r.Values)
 	v.list(at, r, func(x *trial.Value) bool { return x.Outcome == trial.Outside })
 	v.list(at+1, r, func(x *trial.Value) bool { return x.Unreachable })
-	at += 2
+	at = v.probabilities(at + 2)
 	if v.calibre {
 		v.text(at, calibre)
 		at++
