@@ -105,12 +105,12 @@ func (s *server) recovered(next http.Handler) http.Handler {
 }
 
 // legible answers an address that holds what no stored name can hold, a NUL or bytes that are no
-// UTF-8, as one that leads nowhere.
+// UTF-8, as one that leads nowhere. The API says more precisely what is wrong.
 func legible(notFound http.Handler) func(http.Handler) http.Handler {
 	return func(next http.Handler) http.Handler {
 		return http.HandlerFunc(func(w http.ResponseWriter, r *http.Request) {
 			query, err := url.QueryUnescape(r.URL.RawQuery)
-			if err != nil || !page.Legible(query) || !page.Legible(r.URL.Path) {
+			if !strings.HasPrefix(r.URL.Path, apiPrefix) && (err != nil || !page.Legible(query) || !page.Legible(r.URL.Path)) {
 				notFound.ServeHTTP(w, r)
 				return
 			}
