@@ -16,9 +16,10 @@ import (
 // tour is where the README's pictures lie; RATEHOUSE_TOUR=1 makes them anew.
 const tour = "../../testdata/tour"
 
-// TestTour walks through the demonstration as its three people do, and leaves a picture of every
-// page, wide, tablet, dark and as printed.
-func TestTour(t *testing.T) { // not beside the others: forty pictures take both cores
+// TestTour walks through the demonstration as its people do and leaves a picture of every page; their
+// other forms, tablet, dark and as printed, come from the tests of the pages.
+func TestTour(t *testing.T) {
+	t.Parallel()
 	now := time.Date(2026, time.December, 1, 8, 52, 0, 0, demoZone())
 	lab := demoLab(t, now)
 	base := webtest.Serve(t, lab)
@@ -26,6 +27,7 @@ func TestTour(t *testing.T) { // not beside the others: forty pictures take both
 	for _, a := range demoAccounts() {
 		people[a.Role] = a.Password
 	}
+	tabs := map[string]*webtest.Tab{}
 	for _, stop := range []struct {
 		name, person, path string
 		readme             bool
@@ -42,26 +44,27 @@ func TestTour(t *testing.T) { // not beside the others: forty pictures take both
 		{"release", "lead", "/batches/" + demoFinished + "/release", true},
 		{"certificate", "lead", "/certificates/" + demoFinished + "-0001", true},
 	} {
-		t.Run(stop.name, func(t *testing.T) {
-			tab := webtest.Start(t, base)
+		tab := tabs[stop.person]
+		if tab == nil {
+			tab = webtest.Start(t, base)
+			tabs[stop.person] = tab
 			if stop.person != "" {
 				tab.SignIn(stop.person, people[store.Role(stop.person)])
 			}
-			tab.Go(stop.path)
-			if stop.name == "round" && tab.Count(`form[action$="/open"] button`) > 0 {
-				tab.Press(`form[action$="/open"] button`)
+		}
+		tab.Go(stop.path)
+		if stop.name == "round" && tab.Count(`form[action$="/open"] button`) > 0 {
+			tab.Press(`form[action$="/open"] button`)
+		}
+		if shot := tab.Shot("tour-" + stop.name); stop.readme {
+			keep(t, shot, stop.name)
+		}
+		tab.Axe()
+		if stop.name == "certificate" {
+			if leaves := tab.PDF("tour-" + stop.name); leaves != 1 {
+				t.Errorf("%d leaves, want one", leaves)
 			}
-			if shot := tab.Shot("tour-" + stop.name); stop.readme {
-				keep(t, shot, stop.name)
-			}
-			tab.Shots("tour-" + stop.name)
-			tab.AxeBoth()
-			if stop.name == "certificate" {
-				if leaves := tab.PDF("tour-" + stop.name); leaves != 1 {
-					t.Errorf("%d leaves, want one", leaves)
-				}
-			}
-		})
+		}
 	}
 }
 
