@@ -48,7 +48,7 @@ func TestWholeJobByKeyboard(t *testing.T) {
 	lead := webtest.Start(t, base)
 	lead.SignIn("lead", storetest.Password)
 	lead.Go("/batches/26-500")
-	lead.Shots("job-batch")
+	lead.Shot("job-batch")
 	if got := download(t, lead, base+"/batches/26-500/sheets.csv"); got != want {
 		t.Errorf("verdicts on the page's file:\n%s\njudge on the same numbers:\n%s", got, want)
 	}
@@ -58,7 +58,7 @@ func TestWholeJobByKeyboard(t *testing.T) {
 			t.Errorf("rate sheet of %s does not say %s", jobSerial(i), verdict)
 		}
 	}
-	lead.Shots("job-ratesheet")
+	lead.Shot("job-ratesheet")
 	release(t, lead, "26-500", 5)
 }
 
@@ -190,7 +190,7 @@ func download(t *testing.T, tab *webtest.Tab, address string) string {
 func release(t *testing.T, lead *webtest.Tab, code string, papers int) {
 	t.Helper()
 	lead.Go("/batches/" + code + "/release")
-	lead.Shots("job-release")
+	lead.Shot("job-release")
 	lead.Press(`main form .btn.main`)
 	lead.Go("/batches/" + code + "/certificates")
 	if n := lead.Count(`main a[href*="/certificates/` + code + `"]`); n < papers {
@@ -200,5 +200,5 @@ func release(t *testing.T, lead *webtest.Tab, code string, papers int) {
 	if leaves := lead.PDF("job-certificate-" + code); leaves != 1 {
 		t.Errorf("the certificate has %d leaves", leaves)
 	}
-	lead.Shots("job-certificate")
+	lead.Shot("job-certificate")
 }

@@ -39,7 +39,7 @@ func TestRegister(t *testing.T) {
 	tab.WaitText("#preview", "1 holder TRAY10")
 	tab.Click(`input[value=STRIP5]`)
 	tab.WaitText("#preview", "1 holder STRIP5")
-	tab.Shots("register-filled")
+	tab.Shot("register-filled")
 	tab.Allow("status of 404") // the page of the batch belongs to another room
 	tab.Press(`#register .btn.main`)
 	if tab.Path() != "/batches/26-130" {
@@ -83,8 +83,8 @@ func TestRegisterFaults(t *testing.T) {
 			t.Errorf("%s comes back as %q, want %q", css, got, want)
 		}
 	}
-	tab.Shots("register-faults")
-	tab.AxeBoth()
+	tab.Shot("register-faults")
+	tab.Axe()
 	if _, err := h.Lab.Batch(t.Context(), h.Lead, "26-119"); err == nil {
 		t.Error("something was registered")
 	}

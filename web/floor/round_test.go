@@ -345,7 +345,7 @@ func TestOpenAndClose(t *testing.T) {
 	if got := tab.Text(".early"); !strings.Contains(got, "11:00") {
 		t.Errorf("three hours early the page says %q", got)
 	}
-	tab.Shots("round-waiting")
+	tab.Shot("round-waiting")
 	tab.Axe()
 	tab.Press(`form[action$="/open"] button`)
 	tab.Keys("+1.0\r")

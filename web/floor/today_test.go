@@ -32,8 +32,8 @@ func TestTodayEmpty(t *testing.T) {
 	if got := tab.Text(".empty"); !strings.Contains(got, "Nothing to read now") {
 		t.Errorf("empty Today says %q", got)
 	}
-	tab.Shots("today-empty")
-	tab.AxeBoth()
+	tab.Shot("today-empty")
+	tab.Axe()
 	tab.Press(".empty a")
 	if tab.Path() != "/batches/new" {
 		t.Errorf("the one act of an empty Today leads to %s", tab.Path())
@@ -111,8 +111,8 @@ func TestTodayCare(t *testing.T) {
 	if got := plain(tab.Text(".care")); !strings.Contains(got, "8 °C") || !strings.Contains(got, "Saturday") {
 		t.Errorf("care: %q", got)
 	}
-	tab.Shots("today-care")
-	tab.AxeBoth()
+	tab.Shot("today-care")
+	tab.Axe()
 	at(h, tab, b.Due(11).Add(61*time.Minute))
 	if got := plain(tab.Text(".rounds .when")); got != "late by 1 h 01 min" {
 		t.Errorf("beyond the tolerance: %q", got)

@@ -103,8 +103,8 @@ func TestReleasePage(t *testing.T) {
 	if got := tab.Text(".notice.good"); !strings.Contains(got, "2 papers released") || !strings.Contains(got, "1 certificate, 1 report") {
 		t.Errorf("after the release: %q", got)
 	}
-	tab.Shots("release-done")
-	tab.AxeBoth()
+	tab.Shot("release-done")
+	tab.Axe()
 	if got := tab.Texts(`main section[aria-labelledby=h-fresh] tbody th`); strings.Join(got, " ") != "B1-0001 B1-0003" {
 		t.Errorf("released just now: %q", got)
 	}
@@ -251,7 +251,7 @@ func TestRevokeOnThePage(t *testing.T) {
 		t.Error("a revoked paper is not marked across, or offers to be revoked again")
 	}
 	tab.Shot("certificate-revoked")
-	tab.AxeBoth()
+	tab.Axe()
 	checkLeaves(t, tab, "certificate-revoked", 1)
 	tab.Go("/batches/B1/certificates")
 	if got := tab.Text("tbody tr"); !strings.Contains(got, "revoked") {
@@ -271,7 +271,7 @@ func TestPrintAllPapers(t *testing.T) {
 	tab.AxeBoth()
 	tab.Press(".title .btn.main")
 	tab.Shot("papers-print")
-	tab.AxeBoth()
+	tab.Axe()
 	if leaves, drawn := tab.PDF("papers-print"), tab.Count(".paper"); leaves != 2 || drawn != 2 {
 		t.Errorf("two valid papers print on %d leaves, %d drawn", leaves, drawn)
 	}
@@ -319,7 +319,7 @@ func TestVerifyPage(t *testing.T) {
 		t.Errorf("its figures are not shown: %q", got)
 	}
 	tab.Shot("verify-good")
-	tab.AxeBoth()
+	tab.Axe()
 	for name, path := range map[string]string{"the number alone": "/verify?number=B1-0001", "an empty code": "/verify?number=B1-0001&code=", "a mistyped code": "/verify?number=B1-0001&code=" + one.Code[:20],
 		"another paper's code": "/verify?number=B1-0001&code=" + two.Code} {
 		tab.Go(path)
