@@ -167,6 +167,16 @@ func actorOf(r rows.Account, session []byte) Actor {
 // Session tells whose session the token is. It costs one query; the time it was seen is written
 // at most once a minute.
 func (l *Lab) Session(ctx context.Context, token string) (Actor, error) {
+	return l.session(ctx, token, true)
+}
+
+// PeekSession is Session for what nobody asked for, such as a page that draws itself anew: the session
+// ends as if it had not been used.
+func (l *Lab) PeekSession(ctx context.Context, token string) (Actor, error) {
+	return l.session(ctx, token, false)
+}
+
+func (l *Lab) session(ctx context.Context, token string, used bool) (Actor, error) {
 	hash := sha256.Sum256([]byte(token))
 	now := l.Now()
 	s, err := rows.SessionByHash(ctx, l.pool, hash[:])
@@ -176,7 +186,7 @@ func (l *Lab) Session(ctx context.Context, token string) (Actor, error) {
 	if err != nil {
 		return Actor{}, fmt.Errorf("session: %w", err)
 	}
-	if now.Sub(s.SeenAt) > sessionTouched {
+	if used && now.Sub(s.SeenAt) > sessionTouched {
 		if err := rows.TouchSession(ctx, l.pool, hash[:], now); err != nil {
 			return Actor{}, fmt.Errorf("session: %w", err)
 		}

@@ -57,6 +57,7 @@ type Lab struct {
 	mu         sync.RWMutex
 	programmes map[[32]byte]*trial.Programme // immutable, so cached for ever
 	wake       chan struct{}                 // tells a drain of this process that there is work
+	live       hub                           // tells pages of this process what changed
 }
 
 // Open connects to the database and reads what the laboratory says about itself.

@@ -137,7 +137,11 @@ func (s *server) identified(next http.Handler) http.Handler {
 		}
 		c := page.Of(r)
 		if token := s.token(r); token != "" {
-			a, err := s.lab.Session(r.Context(), token)
+			session := s.lab.Session
+			if unattended(r) {
+				session = s.lab.PeekSession
+			}
+			a, err := session(r.Context(), token)
 			switch {
 			case err == nil:
 				s.admit(c, r, a)

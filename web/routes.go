@@ -68,6 +68,7 @@ func (s *server) table() []route {
 		{get, page.ReadyURL, public, s.ready},
 		{get, page.BatchesURL, needs(store.RightBatches), qa.Batches},
 		{get, "/batches/{code}", needs(store.RightBatches), qa.Batch},
+		{get, "/batches/{code}" + page.LiveSuffix, needs(store.RightBatches), s.live},
 		{get, "/batches/{code}/sheets.csv", needs(store.RightVerdicts), qa.SheetsCSV},
 		{post, "/batches/{code}/remarks", needs(store.RightRemark), qa.AddRemark},
 		{post, "/batches/{code}/remarks/{remark}", needs(store.RightAssess), qa.MoveRemark},

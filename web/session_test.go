@@ -17,6 +17,7 @@ import (
 
 	"ratehouse/store"
 	"ratehouse/store/storetest"
+	"ratehouse/web/page"
 )
 
 // client is a browser without a window: it keeps cookies and follows nothing.
@@ -238,6 +239,33 @@ func TestIllegibleText(t *testing.T) {
 				t.Errorf("%s: %d, want 404", address, res.StatusCode)
 			}
 		}
+	}
+}
+
+// A stream of a page ends when the server is to end, and does not keep a session alive.
+func TestLiveStream(t *testing.T) {
+	t.Parallel()
+	h := storetest.New(t)
+	h.Batch(t, "26-001", 1)
+	stopping := make(chan struct{})
+	c, _ := serve(t, Config{Lab: h.Lab, Stopping: stopping})
+	c.signIn("lead", storetest.Password, "")
+	ended := make(chan string)
+	go func() {
+		res, body := c.get("/batches/26-001/live")
+		ended <- res.Header.Get("Content-Type") + " " + body
+	}()
+	close(stopping)
+	if got := <-ended; !strings.HasPrefix(got, "text/event-stream retry:") {
+		t.Errorf("the stream was %q", got)
+	}
+	for range 40 { // 40 times 20 minutes of a page that looks after itself
+		h.Clock.Advance(20 * time.Minute)
+		c.get("/batches/26-001", page.LiveHeader, "1")
+		c.get("/batches/26-001/live")
+	}
+	if res, _ := c.get("/batches/26-001/live"); res.StatusCode != 303 {
+		t.Errorf("after a night: %d, want the way to the log-in", res.StatusCode)
 	}
 }
 

@@ -134,6 +134,7 @@ func (s *service) serve(ctx context.Context, lab *store.Lab, dead <-chan struct{
 	serving, stop := context.WithCancelCause(context.WithoutCancel(ctx))
 	var background sync.WaitGroup
 	background.Go(func() { lab.RunDrain(serving, s.log) })
+	background.Go(func() { lab.RunListener(serving, s.log) })
 	background.Go(func() { s.watch(ctx, serving, dead, stopping, stop) })
 	fmt.Fprintf(s.stdout, "listening on %s\n", address)
 	err = web.Serve(serving, ln, handler)

@@ -64,7 +64,7 @@ type batchView struct {
 func (v batchView) sheet() page.Sheet {
 	c, b := v.c, &v.Batch
 	s := page.Sheet{Title: c.Say(words.BatchTitle.With(b.Code)), Sub: v.sub(), Back: &page.Link{Text: c.Say(words.BatchesAll), URL: page.BatchesURL},
-		Nav: page.BatchesURL, Acts: v.acts(), Styles: []string{"desk.css"}}
+		Nav: page.BatchesURL, Acts: v.acts(), Live: page.LiveURL(b.Code), Styles: []string{"desk.css"}}
 	s.Cells = v.cells()
 	return s
 }

@@ -22,6 +22,7 @@ type Sheet struct {
 	Floor   bool     // larger targets: hands with gloves
 	Door    bool     // a small sheet: signing in, faults
 	Bare    bool     // papers lie on the bench: no sheet, no title block; the content brings its own h1
+	Live    string   // address of the stream that tells when the page is out of date; "" for pages that stay
 	Scripts []string // modules by name, "round.js"
 	Styles  []string // style sheets of these pages alone, by name, "desk.css"
 }
@@ -136,3 +137,11 @@ func (v errorView) subtitle(c *Context) string {
 }
 
 func (v errorView) signedOut() bool { return v.status == http.StatusUnauthorized }
+
+// scripts are the modules of a page, with the one that draws it anew.
+func scripts(s Sheet) []string {
+	if s.Live == "" {
+		return s.Scripts
+	}
+	return append(s.Scripts[:len(s.Scripts):len(s.Scripts)], "live.js")
+}

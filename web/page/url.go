@@ -45,6 +45,16 @@ func under(parts ...string) string {
 // BatchURL is the page of a batch.
 func BatchURL(code string) string { return under("batches", code) }
 
+// LiveSuffix ends the address of the stream that tells a page of a batch when it is out of date;
+// LiveHeader marks a request that such a page then makes by itself.
+const (
+	LiveSuffix = "/live"
+	LiveHeader = "X-Live"
+)
+
+// LiveURL is the stream of a batch.
+func LiveURL(code string) string { return BatchURL(code) + LiveSuffix }
+
 // IntakeURL is the page that gives a batch's movements their places.
 func IntakeURL(code string) string { return under("batches", code, "intake") }
 
