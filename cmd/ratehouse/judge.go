@@ -60,8 +60,8 @@ func judge(args []string, stdin io.Reader, stdout, stderr io.Writer) int {
 		return job.fail("-programme " + *code + ": " + err.Error())
 	}
 	switch {
-	case job.prog.Decision.Rule == trial.Guarded:
-		return job.fail("-programme " + *code + ": its guarded decision rule needs an uncertainty: not built yet")
+	case job.prog.Decision.Rule == trial.Guarded && job.budget == nil:
+		return job.fail("-programme " + *code + ": its guarded decision rule needs an uncertainty: give -uncertainty or -budget")
 	case flags.NArg() == 1 && flags.Arg(0) != "-":
 		return job.file(flags.Arg(0))
 	}
@@ -132,6 +132,11 @@ func (j judgeJob) run(in io.Reader) int {
 	if doubts != nil {
 		open = sheet.NewVerdictsWithChances
 	}
+	if j.prog.Decision.Rule == trial.Guarded {
+		if judges, err = doubts.guarded(); err != nil {
+			return j.fail(err.Error())
+		}
+	}
 	verdicts := open(j.stdout, j.prog, j.format, movements.HasCalibre)
 	refused, err := j.rows(movements, judges, doubts, verdicts)
 	if closing := verdicts.Close(); closing != nil {
@@ -164,7 +169,7 @@ func (j judgeJob) rows(movements *sheet.Movements, judges []*trial.Judge, doubts
 		result := &results[m.Category]
 		judges[m.Category].MilliLong(m.Rates, m.Known, result)
 		if doubts != nil {
-			doubts.add(m, result, verdicts)
+			doubts.add(m, verdicts)
 		}
 		category := j.prog.Categories[m.Category].Code
 		if verdicts.Write(m.Serial, []byte(category), m.Calibre, result) != nil {

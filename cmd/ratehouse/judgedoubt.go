@@ -16,7 +16,8 @@ import (
 // doubt is what judge -uncertainty and -budget add: how probable it is that true values lie within
 // limits, given the uncertainty of a state reading alone or a laboratory's whole budget.
 type doubt struct {
-	judges    []*trial.Judge // by category
+	judges    []*trial.Judge // by category, with the limits as they are
+	result    trial.Result
 	assessors []*conformity.Assessor
 	budget    trial.Budget
 	varies    bool // the covariance hangs on the movement's own slope with temperature
@@ -73,7 +74,9 @@ func (d *doubt) assessor(j *trial.Judge, m conformity.Movement) *conformity.Asse
 }
 
 // add gives the verdicts their probabilities for the movement written next.
-func (d *doubt) add(m *sheet.Movement, r *trial.Result, to *sheet.Verdicts) {
+func (d *doubt) add(m *sheet.Movement, to *sheet.Verdicts) {
+	r := &d.result
+	d.judges[m.Category].MilliLong(m.Rates, m.Known, r)
 	for i, milli := range m.Rates {
 		d.rates[i] = float64(milli) / 1000
 	}
@@ -88,6 +91,24 @@ func (d *doubt) add(m *sheet.Movement, r *trial.Result, to *sheet.Verdicts) {
 		d.each[i] = orNaN(c)
 	}
 	to.WithChances(d.each, orNaN(d.chances.All))
+}
+
+// guarded are the judges whose limits are drawn in by the programme's guard band.
+func (d *doubt) guarded() ([]*trial.Judge, error) {
+	if d.varies {
+		return nil, errors.New("the guarded decision rule needs one uncertainty for all movements, and this budget's temperature terms differ by movement: not built yet")
+	}
+	out := make([]*trial.Judge, len(d.assessors))
+	for i, a := range d.assessors {
+		p, err := a.Guarded()
+		if err != nil {
+			return nil, err
+		}
+		if out[i], err = trial.NewJudge(p, d.judges[i].Category()); err != nil {
+			return nil, err
+		}
+	}
+	return out, nil
 }
 
 func orNaN(c conformity.Chance) float64 {

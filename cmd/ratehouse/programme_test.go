@@ -128,27 +128,55 @@ func TestJudgeWeekly(t *testing.T) {
 	}
 }
 
+// changed writes the built-in programme with a change into a file and gives its path.
+func changed(t *testing.T, change func(*trial.Programme)) string {
+	t.Helper()
+	p := trial.ISO3159()
+	change(p)
+	path := filepath.Join(t.TempDir(), "programme.json")
+	if err := os.WriteFile(path, sheet.Canonical(p), 0o600); err != nil {
+		t.Fatal(err)
+	}
+	return path
+}
+
+func guard(p *trial.Programme) {
+	p.Decision = trial.Decision{Rule: trial.Guarded, Guard: trial.Ratio(1, 1)}
+}
+
+// A guard band of U = 2 u (ILAC-G8:09/2019, 4.2.2): readings of 0.1 s leave u(M) = 0.1 √2/10 s/d (domain
+// notes 5.2, case A), so that M may reach 6 - 0.028284 s/d. The probabilities are those of the simple limits.
+func TestJudgeGuarded(t *testing.T) {
+	t.Parallel()
+	row := func(serial, rate string) string { return serial + ",1" + strings.Repeat(","+rate, 15) + "\n" }
+	rows := header + "\n" + row("A", "5.971") + row("B", "5.972") + row("C", "6.001")
+	stdout, stderr, code := runWith(t, rows, "judge", "-programme", changed(t, guard), "-uncertainty", "0.1")
+	simple, _, _ := runWith(t, rows, "judge", "-uncertainty", "0.1")
+	if code != exitDone {
+		t.Fatalf("exit %d: %s", code, stderr)
+	}
+	got, plain := strings.Split(stdout, "\n"), strings.Split(simple, "\n")
+	for i, want := range []string{"A pass ", "B fail M", "C fail M"} {
+		cells, simply := strings.Split(got[i+1], ","), strings.Split(plain[i+1], ",")
+		if g := cells[0] + " " + cells[2] + " " + cells[10]; g != want {
+			t.Errorf("%q, want %q", g, want)
+		}
+		if g, w := cells[12:], simply[12:]; strings.Join(g, ",") != strings.Join(w, ",") {
+			t.Errorf("probabilities %v, by the simple rule %v", g, w)
+		}
+	}
+}
+
 func TestJudgeRefusesProgrammes(t *testing.T) {
 	t.Parallel()
-	write := func(name string, change func(*trial.Programme)) string {
-		p := trial.ISO3159()
-		change(p)
-		path := filepath.Join(t.TempDir(), name)
-		if err := os.WriteFile(path, sheet.Canonical(p), 0o600); err != nil {
-			t.Fatal(err)
-		}
-		return path
-	}
-	guarded := write("guarded.json", func(p *trial.Programme) {
-		p.Decision = trial.Decision{Rule: trial.Guarded, Guard: trial.Ratio(1, 1)}
-	})
-	odd := write("odd.json", func(p *trial.Programme) { p.Reading.IntervalS = 50_000 })
-	broken := write("broken.json", func(p *trial.Programme) { p.Days[3].N = 7 })
+	guarded := changed(t, guard)
+	odd := changed(t, func(p *trial.Programme) { p.Reading.IntervalS = 50_000 })
+	broken := changed(t, func(p *trial.Programme) { p.Days[3].N = 7 })
 	for _, c := range []struct {
 		args []string
 		want string
 	}{
-		{[]string{"-programme", guarded}, "its guarded decision rule needs an uncertainty: not built yet"},
+		{[]string{"-programme", guarded}, "its guarded decision rule needs an uncertainty: give -uncertainty or -budget"},
 		{[]string{"-programme", odd, "-states"}, "give rates"},
 		{[]string{"-programme", broken}, "days[3].day: days must be numbered 1, 2, 3, ... in order; found 7"},
 		{[]string{"-programme", "-"}, "standard input cannot be both"},
