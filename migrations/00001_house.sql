@@ -565,10 +565,12 @@ CREATE TABLE batch_summary (
   alone    int[] NOT NULL,
   read     int[] NOT NULL,
   cannot   int NOT NULL,
+  prior    bytea NOT NULL DEFAULT '',
   made_at  timestamptz NOT NULL,
   stale    boolean NOT NULL,
   PRIMARY KEY (batch, engine)
 );
+COMMENT ON COLUMN batch_summary.prior IS 'the batch as a history for others: counts, sums and products of its rates (trial.Prior.Bytes); empty while it is not made';
 COMMENT ON COLUMN batch_summary.counts IS 'pass, fail, open by the rates; rejected, withdrawn, void, removed by their end';
 
 -- Append-only, twice: no right to change, and a trigger for whoever has the right ----------------

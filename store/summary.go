@@ -112,6 +112,7 @@ type tallier struct {
 	judge  *trial.Judge
 	result trial.Result
 	sum    Summary
+	prior  *trial.Prior
 }
 
 func newTallier(b *Batch) (*tallier, error) {
@@ -120,11 +121,13 @@ func newTallier(b *Batch) (*tallier, error) {
 		return nil, fmt.Errorf("batch %s: %w", b.Code, err)
 	}
 	n := len(b.Programme.Criteria)
-	return &tallier{batch: b, judge: j, sum: Summary{Failed: make([]int, n), Alone: make([]int, n), Read: make([]int, len(b.Steps))}}, nil
+	return &tallier{batch: b, judge: j, sum: Summary{Failed: make([]int, n), Alone: make([]int, n), Read: make([]int, len(b.Steps))},
+		prior: trial.NewPrior(len(b.Programme.Days))}, nil
 }
 
 func (t *tallier) add(rates []trial.Rate, read func(step int) bool, attempt int, end End) {
 	t.judge.Rates(rates, &t.result)
+	_ = t.prior.Add(rates) // refused is what is no history: a rate that no movement runs at
 	counts := &t.sum.First
 	if attempt > 1 {
 		counts = &t.sum.Again
@@ -244,13 +247,14 @@ func (l *Lab) makeSummaries(ctx context.Context, w *work, batches []*Batch, made
 	for i := range standings {
 		talliers[standings[i].Batch].stand(&standings[i])
 	}
-	list := make([]rows.Summary, len(ids))
+	list, priors := make([]rows.Summary, len(ids)), make([][]byte, len(ids))
 	for i, id := range ids {
 		t := talliers[id]
 		t.sum.MadeAt = w.now
 		made[id], list[i] = &t.sum, t.sum.row(id)
+		priors[i] = t.prior.Bytes()
 	}
-	rows.QueueSummaries(w.out, l.engine, list)
+	rows.QueueSummaries(w.out, l.engine, list, priors)
 	return nil
 }
 

@@ -54,12 +54,24 @@ func ClaimSummaries(b *pgx.Batch, engine string, batches []uuid.UUID, at time.Ti
 		ON CONFLICT (batch, engine) DO UPDATE SET stale = true`, engine, batches, at)
 }
 
-// QueueSummaries writes summaries claimed before.
-func QueueSummaries(b *pgx.Batch, engine string, list []Summary) {
-	for _, s := range list {
-		b.Queue(`UPDATE batch_summary SET counts = $3, failed = $4, alone = $5, read = $6, cannot = $7, made_at = $8, stale = false
-			WHERE batch = $1 AND engine = $2`, s.Batch, engine, s.Counts, s.Failed, s.Alone, s.Read, s.Cannot, s.MadeAt)
+// QueueSummaries writes summaries claimed before, each with its batch as a history.
+func QueueSummaries(b *pgx.Batch, engine string, list []Summary, priors [][]byte) {
+	for i, s := range list {
+		b.Queue(`UPDATE batch_summary SET counts = $3, failed = $4, alone = $5, read = $6, cannot = $7, made_at = $8, prior = $9, stale = false
+			WHERE batch = $1 AND engine = $2`, s.Batch, engine, s.Counts, s.Failed, s.Alone, s.Read, s.Cannot, s.MadeAt, priors[i])
 	}
+}
+
+// Prior is one batch as a history for another.
+type Prior struct {
+	Own   bool // of the same calibre
+	Prior []byte
+}
+
+// PriorsOf queues what the summaries of the engine know of every other batch on a programme.
+func PriorsOf(b *pgx.Batch, into *[]Prior, engine string, programme []byte, calibre *uuid.UUID, but uuid.UUID) {
+	list(b, into, `SELECT coalesce(b.calibre = $3, false) AS own, s.prior FROM batch_summary s JOIN batch b ON b.id = s.batch
+		WHERE s.engine = $1 AND b.programme = $2 AND b.id <> $4 AND s.prior <> '' ORDER BY b.id`, engine, programme, calibre, but)
 }
 
 // RemarkCount is how many remarks of a batch are not closed.
