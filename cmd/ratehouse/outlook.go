@@ -101,21 +101,33 @@ func (j *outlookJob) fail(err error) int {
 
 func (j *outlookJob) run(past, file string) int {
 	j.all, j.own, j.ready = trial.NewPrior(len(j.prog.Days)), map[string]*trial.Prior{}, map[string]*outlook.Forecast{}
-	err := j.read(past, "history: ", j.learn)
+	movements, close, err := j.open(past)
+	if err == nil {
+		defer close()
+		err = j.rows(movements, "history: ", j.learn)
+	}
 	if err != nil {
 		return j.unreadable("history: ", err)
 	}
-	out := sheet.NewWriter(j.stdout)
-	if err := out.Row("serial", "read", "pass_probability"); err != nil {
-		return j.fail(fmt.Errorf("cannot write: %w", err))
+	if movements, close, err = j.open(file); err != nil {
+		return j.unreadable("", err)
 	}
-	err = j.read(file, "", func(m *sheet.Movement, rates []trial.Rate) error {
+	defer close()
+	return j.forecasts(movements)
+}
+
+// forecasts prints one a movement.
+func (j *outlookJob) forecasts(movements *sheet.Movements) int {
+	out := sheet.NewWriter(j.stdout)
+	wrong := out.Row("serial", "read", "pass_probability")
+	err := j.rows(movements, "", func(m *sheet.Movement, rates []trial.Rate) error {
 		f, err := j.forecast(string(m.Calibre), m.Category)
-		if err != nil {
+		if err != nil || wrong != nil {
 			return err
 		}
 		p, ok := f.Chance(rates)
-		return out.Row(string(m.Serial), strconv.Itoa(daysRead(rates)), probability(p, ok))
+		wrong = out.Row(string(m.Serial), strconv.Itoa(daysRead(rates)), probability(p, ok))
+		return nil
 	})
 	if closing := out.Flush(); closing != nil {
 		return j.fail(fmt.Errorf("cannot write: %w", closing))
@@ -159,21 +171,24 @@ func (j *outlookJob) forecast(calibre string, category int) (*outlook.Forecast, 
 	return f, err
 }
 
-// read gives each movement of a file with its rates, and names the rows refused.
-func (j *outlookJob) read(name, where string, each func(*sheet.Movement, []trial.Rate) error) error {
-	in := j.stdin
-	if name != "-" {
-		f, err := os.Open(name)
-		if err != nil {
-			return err
-		}
-		defer f.Close()
-		in = f
+// open reads the header of a file.
+func (j *outlookJob) open(name string) (m *sheet.Movements, close func() error, err error) {
+	if name == "-" {
+		m, err = sheet.OpenMovements(j.stdin, j.prog, false)
+		return m, func() error { return nil }, err
 	}
-	movements, err := sheet.OpenMovements(in, j.prog, false)
+	f, err := os.Open(name)
 	if err != nil {
-		return err
+		return nil, nil, err
 	}
+	if m, err = sheet.OpenMovements(f, j.prog, false); err != nil {
+		return nil, nil, errors.Join(err, f.Close())
+	}
+	return m, f.Close, nil
+}
+
+// rows gives each movement of a file with its rates, and names the rows refused.
+func (j *outlookJob) rows(movements *sheet.Movements, where string, each func(*sheet.Movement, []trial.Rate) error) error {
 	rates := make([]trial.Rate, len(j.prog.Days))
 	for {
 		m, fault, err := movements.Next()

@@ -7,7 +7,7 @@ import "ratehouse/trial"
 const (
 	freedom = 4    // degrees of freedom of a scale of which nothing is known, as in trial/entry
 	weight  = 30   // movements of history that weigh as much as what is more general: all calibres, no calibre
-	draws   = 2048 // points
+	draws   = 1024 // points
 	surest  = 1e-6 // how near an open movement comes to 0 or 1, which are for what is certain
 )
 

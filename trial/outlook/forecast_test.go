@@ -92,7 +92,7 @@ func TestCertain(t *testing.T) {
 			rates[0], rates[3] = trial.RateOf(17_000), trial.Rate{}
 		}
 		if i%50 == 1 { // two days that no others can be brought near to
-			rates = first([]trial.Rate{trial.RateOf(-9000), trial.RateOf(-9000), trial.RateOf(9000), trial.RateOf(9000), 14: {}}, 4)
+			rates = first([]trial.Rate{trial.RateOf(-12_000), trial.RateOf(-12_000), trial.RateOf(12_000), trial.RateOf(12_000), 14: {}}, 4)
 		}
 		p := chance(t, f, rates)
 		j.Rates(rates, &r)

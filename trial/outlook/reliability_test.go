@@ -100,11 +100,11 @@ func measure(t testing.TB, f *outlook.Forecast, past [][]trial.Rate, went []bool
 }
 
 // The figures on the second generator: a history of 3,000 movements in 100 lots, and others of
-// many other lots (2,000; 40,000 under RATEHOUSE_SOAK=1). A gap may be 0.03, and what chance makes of so
+// many other lots (2,500; 40,000 under RATEHOUSE_SOAK=1). A gap may be 0.03, and what chance makes of so
 // few movements besides: two of its standard errors, four where few are drawn.
 func TestReliability(t *testing.T) {
 	t.Parallel()
-	lots, days, errors := 400, []int{2, 6, 10}, 4.0
+	lots, days, errors := 500, []int{2, 6, 10}, 4.0
 	if os.Getenv("RATEHOUSE_SOAK") == "1" {
 		lots, days, errors = 8000, []int{2, 4, 6, 8, 10, 13}, 2
 	}
@@ -112,6 +112,7 @@ func TestReliability(t *testing.T) {
 	past, went := lotsOf(t, m, 100, 30)
 	now, passed := lotsOf(t, m, lots, 5)
 	all := measure(t, forecastOf(t, priorOf(t, past), nil), past, went, now, passed, days)
+	all = append(all, together(all))
 	t.Log("\n" + table(all))
 	counted := 0
 	for _, f := range all {
@@ -128,9 +129,21 @@ func TestReliability(t *testing.T) {
 			}
 		}
 	}
-	if counted < 2*len(all) {
+	if counted < len(all)+2 {
 		t.Errorf("%d deciles with 200 forecasts and more", counted)
 	}
+}
+
+// together is all days in one, as 0 days.
+func together(all []figures) (sum figures) {
+	for _, f := range all {
+		sum.brier, sum.logit = sum.brier+f.brier/float64(len(all)), sum.logit+f.logit/float64(len(all))
+		for i, d := range f.deciles {
+			s := &sum.deciles[i]
+			s.n, s.said, s.passed = s.n+d.n, s.said+d.said, s.passed+d.passed
+		}
+	}
+	return sum
 }
 
 // table prints the figures as they stand in the docs.
