@@ -28,6 +28,40 @@ func (p *Prior) Normal(base Normal, weight float64) Normal {
 	return out
 }
 
+// Spreads of Unknown.
+const (
+	unknownMean    = 4.0  // s/d: spread of movements nothing is known of,
+	unknownPlace   = 3.0  // of one position against another,
+	unknownThermal = 0.4  // s/d per °C,
+	unknownDay     = 0.7  // s/d: of one day
+	unknownRead    = 0.15 // s: of one reading, shared by two neighbouring days with opposite sign
+)
+
+// Unknown is the distribution of rates of a calibre nothing is known of: a level of the movement, one of
+// each position, a thermal slope about 23 °C, and what is new each day. Spreads that fit most
+// movements: common practice, no source.
+func Unknown(days []Day) Normal {
+	n := Normal{Mean: make([]float64, len(days)), Cov: make([][]float64, len(days))}
+	for i, a := range days {
+		n.Cov[i] = make([]float64, len(days))
+		for j, b := range days {
+			warm := (a.TemperatureC.Exact().Float() - 23) * (b.TemperatureC.Exact().Float() - 23)
+			c := unknownMean*unknownMean + unknownThermal*unknownThermal*warm
+			if a.Position == b.Position {
+				c += unknownPlace * unknownPlace
+			}
+			switch {
+			case i == j:
+				c += unknownDay*unknownDay + 2*unknownRead*unknownRead
+			case i-j == 1 || j-i == 1:
+				c -= unknownRead * unknownRead
+			}
+			n.Cov[i][j] = c
+		}
+	}
+	return n
+}
+
 func square(n int) [][]float64 {
 	a := make([][]float64, n)
 	for i := range a {

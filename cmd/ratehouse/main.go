@@ -41,7 +41,7 @@ func commands() []command {
 		{"serve", "run the laboratory's web service", "RATEHOUSE_ADDR=127.0.0.1:8080 ratehouse serve", runServe, serveFlags},
 		{"demo", "serve an invented laboratory with demo data", "ratehouse demo", runDemo, demoFlags},
 		{"judge", "judge movements from a file of rates or states", "ratehouse judge rates.csv", runJudge, judgeFlags},
-		{"outlook", "estimate how likely open movements will pass", "ratehouse outlook -history past.csv open.csv", nil, nil},
+		{"outlook", "estimate how likely open movements will pass", "ratehouse outlook -history past.csv open.csv", runOutlook, outlookFlags},
 		{"simulate", "make physically plausible movements", "ratehouse simulate -n 100 -seed 1 | ratehouse judge", runSimulate, simulateFlags},
 		{"programme", "check, show or add test programmes", "ratehouse programme check winter.json", runProgramme, programmeFlags},
 		{"verify", "verify a certificate file", "ratehouse verify -key lab.pub certificate.json", runVerify, verifyFlags},

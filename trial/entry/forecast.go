@@ -27,15 +27,10 @@ type Forecast struct {
 // Constants of the model. Common practice, no source; set on the first simulator (trial/simulate),
 // judged on the second (trial/simulate/rival).
 const (
-	freedom     = 4     // degrees of freedom of a movement of which nothing is known
-	askTail     = 0.005 // share of right values that the model itself would ask again
-	baseWeight  = 30    // movements of history that weigh as much as knowing nothing
-	fewLots     = 100   // movements of history at which variances are still taken half as large again
-	baseMean    = 4.0   // s/d: spread of movements nothing is known of,
-	basePlace   = 3.0   // of one position against another,
-	baseThermal = 0.4   // s/d per °C,
-	baseDay     = 0.7   // s/d: of one day
-	baseRead    = 0.15  // s: of one reading, shared by two neighbouring days with opposite sign
+	freedom    = 4     // degrees of freedom of a movement of which nothing is known
+	askTail    = 0.005 // share of right values that the model itself would ask again
+	baseWeight = 30    // movements of history that weigh as much as knowing nothing
+	fewLots    = 100   // movements of history at which variances are still taken half as large again
 )
 
 // NewForecast prepares forecasts. A nil history is an empty one: then spreads that fit most
@@ -47,7 +42,7 @@ func NewForecast(p *trial.Programme, history *trial.Prior) (*Forecast, error) {
 	if history.Days != len(p.Days) {
 		return nil, trial.ErrPriorDays
 	}
-	f := &Forecast{days: p.Days, normal: history.Normal(base(p.Days), baseWeight), given: map[string]*trial.Conditional{}}
+	f := &Forecast{days: p.Days, normal: history.Normal(trial.Unknown(p.Days), baseWeight), given: map[string]*trial.Conditional{}}
 	f.doubt = 1 + fewLots/(fewLots+float64(history.N()))
 	for m := range len(p.Days) + 1 {
 		f.tails = append(f.tails, tailOf(freedom+m))
@@ -69,30 +64,6 @@ func tailOf(dof int) tail {
 		out.shape = append(out.shape, max(1, int64(math.Round(shapeTop*t.Prob(out.look*float64(i)/shapeParts)/t.Prob(0)))))
 	}
 	return out
-}
-
-// base is the distribution of rates of a calibre nothing is known of: a level of the movement, one of
-// each position, a thermal slope about 23 °C, and what is new each day.
-func base(days []trial.Day) trial.Normal {
-	n := trial.Normal{Mean: make([]float64, len(days)), Cov: make([][]float64, len(days))}
-	for i, a := range days {
-		n.Cov[i] = make([]float64, len(days))
-		for j, b := range days {
-			warm := (a.TemperatureC.Exact().Float() - 23) * (b.TemperatureC.Exact().Float() - 23)
-			c := baseMean*baseMean + baseThermal*baseThermal*warm
-			if a.Position == b.Position {
-				c += basePlace * basePlace
-			}
-			switch {
-			case i == j:
-				c += baseDay*baseDay + 2*baseRead*baseRead
-			case i-j == 1 || j-i == 1:
-				c -= baseRead * baseRead
-			}
-			n.Cov[i][j] = c
-		}
-	}
-	return n
 }
 
 // known is what was read of a movement: days in order, and their rates in s/d.
