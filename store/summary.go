@@ -13,6 +13,7 @@ import (
 
 	"ratehouse/store/rows"
 	"ratehouse/trial"
+	"ratehouse/trial/lot"
 )
 
 // Counts is how the movements of a batch stand: each in one of these. Those that left the trial are
@@ -113,6 +114,7 @@ type tallier struct {
 	result trial.Result
 	sum    Summary
 	prior  *trial.Prior
+	fails  *lot.Failures // of those that count as fail; who was rejected for cause has a bar of its own
 }
 
 func newTallier(b *Batch) (*tallier, error) {
@@ -120,9 +122,9 @@ func newTallier(b *Batch) (*tallier, error) {
 	if err != nil {
 		return nil, fmt.Errorf("batch %s: %w", b.Code, err)
 	}
-	n := len(b.Programme.Criteria)
-	return &tallier{batch: b, judge: j, sum: Summary{Failed: make([]int, n), Alone: make([]int, n), Read: make([]int, len(b.Steps))},
-		prior: trial.NewPrior(len(b.Programme.Days))}, nil
+	fails := lot.NewFailures(len(b.Programme.Criteria))
+	return &tallier{batch: b, judge: j, fails: fails, prior: trial.NewPrior(len(b.Programme.Days)),
+		sum: Summary{Failed: fails.Outside, Alone: fails.Alone, Read: make([]int, len(b.Steps))}}, nil
 }
 
 func (t *tallier) add(rates []trial.Rate, read func(step int) bool, attempt int, end End) {
@@ -144,25 +146,10 @@ func (t *tallier) add(rates []trial.Rate, read func(step int) bool, attempt int,
 			t.sum.Cannot++
 		}
 		if t.result.Verdict == trial.Fail {
-			t.fails()
+			t.fails.Add(&t.result)
 		}
 	case Removed:
-		t.fails()
-	}
-}
-
-// fails counts by criterion a movement that counts as fail. One rejected for cause has a bar of its
-// own: its rates are not why.
-func (t *tallier) fails() {
-	outside, last := 0, -1
-	for i := range t.result.Values {
-		if t.result.Values[i].Outcome == trial.Outside {
-			t.sum.Failed[i]++
-			outside, last = outside+1, i
-		}
-	}
-	if outside == 1 {
-		t.sum.Alone[last]++
+		t.fails.Add(&t.result)
 	}
 }
 

@@ -5,15 +5,9 @@ import (
 	"strconv"
 
 	"ratehouse/trial"
+	"ratehouse/trial/lot"
 	"ratehouse/web/words"
 )
-
-// Sample is one movement's value of a criterion. Outside is the engine's exact word on the limits; the
-// float only says where to draw it.
-type Sample struct {
-	X       float64
-	Outside bool
-}
 
 // Distribution is a histogram of one criterion over a batch, against its limits. The limits fall on
 // edges of columns, and a value equal to a limit stands inside.
@@ -21,7 +15,7 @@ type Distribution struct {
 	Symbol, Title  string
 	Unit           string
 	Signed         bool
-	Samples        []Sample
+	Samples        []lot.Sample
 	HasMin, HasMax bool
 	Min, Max       float64
 	MinText        string
@@ -42,7 +36,7 @@ func DistributionOf(p *words.Printer, j *trial.Judge, i int, results []trial.Res
 	var sum trial.Exact
 	for _, r := range results {
 		if v := r.Values[i]; v.Known {
-			d.Samples = append(d.Samples, Sample{v.Float(), v.Outcome == trial.Outside})
+			d.Samples = append(d.Samples, lot.Sample{X: v.Float(), Outside: v.Outcome == trial.Outside})
 			sum = sum.Add(v.Rational())
 		}
 	}
@@ -56,92 +50,9 @@ func DistributionOf(p *words.Printer, j *trial.Judge, i int, results []trial.Res
 	return d
 }
 
-// bin is one column: a range of values and how many fell into it. The first and the last take in
-// everything beyond.
-type bin struct {
-	From, To float64
-	N        int
-	Outside  bool
-	Beyond   bool
-}
-
-// bins lays out the columns: between the limits a number of equal ones with a round width, and as many
-// of them outside as the values need, at most the width of the interval again.
-func (d Distribution) bins() []bin {
-	lo, hi, step := d.grid()
-	first, last := 0, int(math.Round((hi-lo)/step))
-	within := last
-	for _, s := range d.Samples {
-		k := d.column(s, lo, step, within)
-		first, last = min(first, max(k, -within)), max(last, min(k+1, 2*within))
-	}
-	out := make([]bin, last-first)
-	for i := range out {
-		k := first + i
-		out[i] = bin{From: lo + float64(k)*step, To: lo + float64(k+1)*step, Outside: d.HasMin && k < 0 || d.HasMax && k >= within}
-	}
-	for _, s := range d.Samples {
-		k := d.column(s, lo, step, within) - first
-		c := min(max(k, 0), len(out)-1)
-		out[c].N++
-		out[c].Beyond = out[c].Beyond || c != k
-	}
-	return out
-}
-
-// column is the column of a value counted from the lower limit; the engine's word decides at a limit.
-func (d Distribution) column(s Sample, lo, step float64, within int) int {
-	k := int(math.Floor((s.X - lo) / step))
-	switch {
-	case d.HasMin && !s.Outside && k < 0:
-		return 0
-	case d.HasMax && !s.Outside && k >= within:
-		return within - 1
-	case s.Outside && d.HasMax && s.X >= d.Max && k < within:
-		return within
-	case s.Outside && d.HasMin && s.X <= d.Min && k >= 0:
-		return -1
-	}
-	return k
-}
-
-// grid is the interval and the width of its columns: the limits where there are two, else what the
-// values span.
-func (d Distribution) grid() (lo, hi, step float64) {
-	if d.HasMin && d.HasMax && d.Max > d.Min {
-		lo, hi = d.Min, d.Max
-	} else {
-		lo, hi = math.Inf(1), math.Inf(-1)
-		for _, s := range d.Samples {
-			lo, hi = math.Min(lo, s.X), math.Max(hi, s.X)
-		}
-		if !(hi > lo) {
-			lo, hi = lo-1, lo+1
-		}
-		lo, hi = Widen(lo, hi, 12)
-	}
-	want := 10
-	if len(d.Samples) >= 80 {
-		want = 20
-	}
-	return lo, hi, (hi - lo) / float64(roundParts(hi-lo, want))
-}
-
-// roundParts is the number of parts near want that divide the span into steps of one, two, two and a
-// half or five times a power of ten; want itself where there is none.
-func roundParts(span float64, want int) int {
-	for off := 0; off <= want/2; off++ {
-		for _, n := range []int{want + off, want - off} {
-			m := span / float64(n)
-			m /= math.Pow10(int(math.Floor(math.Log10(m) + 1e-9)))
-			for _, nice := range []float64{1, 2, 2.5, 5, 10} {
-				if math.Abs(m-nice) < 1e-6 {
-					return n
-				}
-			}
-		}
-	}
-	return want
+// bins lays out the columns.
+func (d Distribution) bins() []lot.Column {
+	return lot.Histogram(d.Samples, lot.Bounds{HasMin: d.HasMin, Min: d.Min, HasMax: d.HasMax, Max: d.Max})
 }
 
 type histogramView struct {
@@ -191,7 +102,7 @@ func (d Distribution) view(p *words.Printer) histogramView {
 		v.rows = append(v.rows, axisTick{class, px(y.At(t.At)), p.Count(int(t.At)), px(y.At(t.At) + 4)})
 	}
 	for _, b := range bins {
-		v.cols = append(v.cols, d.column1(p, b, x, y))
+		v.cols = append(v.cols, d.column(p, b, x, y))
 	}
 	v.limitsAndTicks(p, x, from-room, to+room)
 	return v
@@ -205,14 +116,14 @@ func over(ticks []Tick, top float64) []Tick {
 	return nil
 }
 
-func (d Distribution) column1(p *words.Printer, b bin, x, y Scale) column {
+func (d Distribution) column(p *words.Printer, b lot.Column, x, y Scale) column {
 	left, right := x.At(b.From), x.At(b.To)
 	top := y.At(float64(b.N))
 	class := "col"
 	if b.Outside {
 		class = "col over"
 	}
-	places := d.edgePlaces()
+	places := edgePlaces(b.To - b.From)
 	edge := func(e float64) string {
 		return p.Number(strconv.FormatFloat(e, 'f', 6, 64), places, d.Signed)
 	}
@@ -224,9 +135,8 @@ func (d Distribution) column1(p *words.Printer, b bin, x, y Scale) column {
 		px(left), px(right - left), px(mid - w/2), px(top - 22), px(w), px(top - 8), px(mid)}
 }
 
-// edgePlaces is the number of decimals that tell the edges of columns apart.
-func (d Distribution) edgePlaces() int {
-	_, _, step := d.grid()
+// edgePlaces is the number of decimals that tell the edges of columns a step apart.
+func edgePlaces(step float64) int {
 	for places := range 4 {
 		if s := step * math.Pow10(places); math.Abs(s-math.Round(s)) < 1e-6 {
 			return max(places, 1)

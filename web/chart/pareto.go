@@ -4,6 +4,7 @@ import (
 	"slices"
 
 	"ratehouse/trial"
+	"ratehouse/trial/lot"
 	"ratehouse/web/words"
 )
 
@@ -30,21 +31,12 @@ func ParetoOf(p *words.Printer, j *trial.Judge, results []trial.Result, whole in
 	for i, c := range crit {
 		rows[i] = ParetoRow{Symbol: c.Symbol, Title: p.Say(words.CriterionTitle(c.Symbol, c.Title))}
 	}
-	for _, r := range results {
-		failed := 0
-		for _, v := range r.Values {
-			if v.Outcome == trial.Outside {
-				failed++
-			}
-		}
-		for i, v := range r.Values {
-			switch {
-			case v.Outcome == trial.Outside && failed == 1:
-				rows[i].Alone++
-			case v.Outcome == trial.Outside:
-				rows[i].Together++
-			}
-		}
+	count := lot.NewFailures(len(crit))
+	for i := range results {
+		count.Add(&results[i])
+	}
+	for i := range rows {
+		rows[i].Alone, rows[i].Together = count.Alone[i], count.Outside[i]-count.Alone[i]
 	}
 	rows = append(rows, extra...)
 	slices.SortStableFunc(rows, func(a, b ParetoRow) int { return b.N() - a.N() })

@@ -8,6 +8,7 @@ import (
 
 	"ratehouse/store"
 	"ratehouse/trial"
+	"ratehouse/trial/lot"
 	"ratehouse/web/chart"
 	"ratehouse/web/page"
 	"ratehouse/web/part"
@@ -341,7 +342,7 @@ func (v batchView) soFar(d *distribution, at int) {
 			continue
 		}
 		most = max(most, p.days)
-		d.Chart.Samples = append(d.Chart.Samples, chart.Sample{X: p.mean.Float(), Outside: !l.Contains(p.mean)})
+		d.Chart.Samples = append(d.Chart.Samples, lot.Sample{X: p.mean.Float(), Outside: !l.Contains(p.mean)})
 		sum = sum.Add(p.mean)
 	}
 	n := len(d.Chart.Samples)
