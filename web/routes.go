@@ -72,6 +72,7 @@ func (s *server) table() []route {
 		{post, "/batches/{code}/remarks", needs(store.RightRemark), qa.AddRemark},
 		{post, "/batches/{code}/remarks/{remark}", needs(store.RightAssess), qa.MoveRemark},
 		{get, "/batches/{code}/movements/{serial}", needs(store.RightBatches), qa.Movement},
+		{get, "/batches/{code}/movements/{serial}/doubt", needs(store.RightDoubt), qa.Doubt},
 		{post, "/batches/{code}/movements/{serial}/readings", needs(store.RightCorrect), qa.Correct},
 		{post, "/batches/{code}/movements/{serial}/end", needs(store.RightEnd), qa.End},
 		{get, page.SearchURL, needs(store.RightBatches), qa.Search},

@@ -28,11 +28,12 @@ func param(r *http.Request, name string) string {
 
 // rights are what the actor may do on these pages.
 type rights struct {
-	verdicts, enter, register, correct, end, remark, assess, release, papers bool
+	verdicts, doubt, enter, register, correct, end, remark, assess, release, papers, bench bool
 }
 
 func rightsOf(c *page.Context) rights {
 	may := c.Actor.May
-	return rights{may(store.RightVerdicts), may(store.RightEnter), may(store.RightRegister), may(store.RightCorrect), may(store.RightEnd),
-		may(store.RightRemark), may(store.RightAssess), may(store.RightRelease), may(store.RightCertificates)}
+	return rights{may(store.RightVerdicts), may(store.RightDoubt), may(store.RightEnter), may(store.RightRegister), may(store.RightCorrect), may(store.RightEnd),
+		may(store.RightRemark), may(store.RightAssess), may(store.RightRelease), may(store.RightCertificates),
+		may(store.RightBench)}
 }

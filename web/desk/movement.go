@@ -123,6 +123,9 @@ func (v movementView) sheet() page.Sheet {
 			s.Acts = append(s.Acts, page.Act{Text: c.Say(beside.text), URL: page.MovementURL(v.Batch.Code, beside.serial)})
 		}
 	}
+	if v.may.doubt {
+		s.Scripts = []string{page.LaterScript}
+	}
 	if v.may.correct && len(v.correctable()) > 0 {
 		s.Acts = append(s.Acts, page.Act{Text: c.Say(words.CorrectReading), URL: v.open(doCorrect, "")})
 	}

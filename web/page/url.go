@@ -62,6 +62,15 @@ func RoundPlaceURL(code string, k int, holder, place string) string {
 // MovementURL is the rate sheet of a movement.
 func MovementURL(code, serial string) string { return under("batches", code, "movements", serial) }
 
+// DoubtURL is how sure the verdict of a movement is.
+func DoubtURL(code, serial string) string { return Under(MovementURL(code, serial), "doubt") }
+
+// AimURL is what a batch would yield with all its rates shifted.
+func AimURL(code string) string { return under("batches", code, "aim") }
+
+// BenchNoteURL is the note on a movement for the adjuster's bench.
+func BenchNoteURL(code, serial string) string { return under("bench", code, serial) }
+
 // CertificateURL is a released paper.
 func CertificateURL(number string) string { return under("certificates", number) }
 
