@@ -69,6 +69,7 @@ func (s *server) table() []route {
 		{get, page.BatchesURL, needs(store.RightBatches), qa.Batches},
 		{get, "/batches/{code}", needs(store.RightBatches), qa.Batch},
 		{get, "/batches/{code}/sheets.csv", needs(store.RightVerdicts), qa.SheetsCSV},
+		{get, "/batches/{code}/aim", needs(store.RightVerdicts), qa.Aim},
 		{post, "/batches/{code}/remarks", needs(store.RightRemark), qa.AddRemark},
 		{post, "/batches/{code}/remarks/{remark}", needs(store.RightAssess), qa.MoveRemark},
 		{get, "/batches/{code}/movements/{serial}", needs(store.RightBatches), qa.Movement},
