@@ -1,9 +1,6 @@
 package desk
 
 import (
-	"net/http"
-	"net/url"
-
 	"ratehouse/store"
 	"ratehouse/web/page"
 )
@@ -14,17 +11,8 @@ type Desk struct{ lab *store.Lab }
 // New makes the pages of a laboratory.
 func New(lab *store.Lab) *Desk { return &Desk{lab} }
 
-// param is a part of the address as it was meant; the router leaves escapes in it where there are any.
-func param(r *http.Request, name string) string {
-	v := r.PathValue(name)
-	if r.URL.RawPath == "" {
-		return v
-	}
-	if plain, err := url.PathUnescape(v); err == nil {
-		return plain
-	}
-	return v
-}
+// param is a part of the address as it was meant.
+var param = page.Param
 
 // rights are what the actor may do on these pages.
 type rights struct {

@@ -136,6 +136,9 @@ func (v movementView) sheet() page.Sheet {
 		}
 		s.Acts = append(s.Acts, page.Act{Text: c.Say(text), URL: v.open(doEnd, "")})
 	}
+	if v.may.bench && v.result.Verdict == trial.Fail {
+		s.Acts = append(s.Acts, page.Act{Text: c.Say(words.BenchNoteTitle), URL: page.BenchNoteURL(v.Batch.Code, m.Serial)})
+	}
 	if v.may.verdicts && m.Paper != "" {
 		s.Acts = append(s.Acts, page.Act{Text: c.Say(paperWord(m.PaperKind)), URL: page.CertificateURL(m.Paper), Main: true})
 	}

@@ -1,6 +1,7 @@
 package page
 
 import (
+	"net/http"
 	"net/url"
 	"strconv"
 	"strings"
@@ -102,4 +103,16 @@ func Local(target string) bool {
 	}
 	u, err := url.Parse(target)
 	return err == nil && u.Host == "" && u.Scheme == ""
+}
+
+// Param is a part of the address as it was meant; the router leaves escapes in it where there are any.
+func Param(r *http.Request, name string) string {
+	v := r.PathValue(name)
+	if r.URL.RawPath == "" {
+		return v
+	}
+	if plain, err := url.PathUnescape(v); err == nil {
+		return plain
+	}
+	return v
 }
