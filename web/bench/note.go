@@ -3,6 +3,7 @@ package bench
 import (
 	"math"
 	"net/http"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -110,7 +111,7 @@ func (v noteView) page() page.Sheet {
 	s.Cells = []page.Cell{{Label: c.Say(words.Standing), Body: standsCell(c, standing(m, v.result.Verdict), v.failedIn())},
 		page.TextCell(c.Say(words.BenchOpenBatch), v.sheet.Batch.Code),
 		page.TextCell(c.Say(words.BenchAuthor), c.Say(words.BenchAuthorIs.With(c.Actor.Title, words.RoleName(string(c.Actor.Role))))),
-		page.TextCell(c.Say(words.BenchMadeOn), c.Stamp(c.Now))}
+		page.TextCell(c.Say(words.BenchMadeOn), c.Date(c.Now))}
 	s.Acts = []page.Act{{Text: c.Say(words.RateSheet), URL: page.MovementURL(v.sheet.Batch.Code, m.Serial)}}
 	return s
 }
@@ -156,7 +157,8 @@ func (v noteView) parts() (parts []notePart) {
 
 // restsOn names what came from elsewhere than the rates.
 func (v noteView) restsOn() (lines []string) {
-	if a := v.amplitude(); a != (balance.Amplitude{}) {
+	speaks := slices.ContainsFunc(v.note.Beyond, func(f balance.Finding) bool { return f.Code == balance.Vertical })
+	if speaks && v.amplitude() != (balance.Amplitude{}) {
 		lines = append(lines, v.c.Say(words.BenchWasGiven.With(v.form.Get("from"), v.form.Get("to"))))
 	}
 	step, u := part.ResolutionText()

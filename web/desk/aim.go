@@ -35,7 +35,7 @@ func (d *Desk) Aim(w http.ResponseWriter, r *http.Request) error {
 	}
 	form := shiftForm(c, r.URL.Query().Get("shift"))
 	v := aimViewOf(c, s.Batch.Code, judgedRates(&s), j, form)
-	frame := page.Sheet{Title: c.Say(words.AimTitle), Code: s.Batch.Code, Sub: forWhom(c, &s.Batch), Nav: page.BatchesURL, Styles: []string{"desk.css"},
+	frame := page.Sheet{Title: c.Say(words.BatchTitle.With(s.Batch.Code)), Sub: forWhom(c, &s.Batch), Nav: page.BatchesURL, Styles: []string{"desk.css"},
 		Back: &page.Link{Text: c.Say(words.BatchTitle.With(s.Batch.Code)), URL: page.BatchURL(s.Batch.Code)}}
 	status := http.StatusOK
 	if !form.OK() {
@@ -109,11 +109,7 @@ func aimViewOf(c *page.Context, code string, lot [][]trial.Rate, j *trial.Judge,
 		v.Nothing = words.AimNone
 		return v
 	}
-	v.Says = append(v.Says, c.Say(words.AimNow.With(a.Passed, a.Movements)), c.Say(words.AimBest.With(a.AtBest, shifts(c, a.Best))),
-		c.Say(words.AimNear.With(shifts(c, a.Near))), c.Say(words.AimSure.With(shifts(c, balance.Shift{Lo: a.Low, Hi: a.High}))))
-	if a.MRejects > 0 {
-		v.Says = append(v.Says, c.Say(words.AimRegulation.With(a.RegulationOnly, a.MRejects)))
-	}
+	v.Says = aimSays(c, &a)
 	for _, s := range aimShifts {
 		n := a.PassesAt(s)
 		v.Rows = append(v.Rows, aimRow{c.Signed(s.String(), 1), c.Count(n), c.Share(n, a.Movements), n, a.Movements, s == 0})
@@ -125,6 +121,23 @@ func aimViewOf(c *page.Context, code string, lot [][]trial.Rate, j *trial.Judge,
 		v.Asked = c.Say(words.AimAsked.With(c.Unit(c.Signed(s.String(), decimals(s)), c.Say(words.UnitSecondsPerDay)), n, a.Movements, c.Share(n, a.Movements)))
 	}
 	return v
+}
+
+// aimSays says the aim point in sentences.
+func aimSays(c *page.Context, a *balance.Aim) []string {
+	best := words.AimBest.With(a.AtBest, shifts(c, a.Best))
+	if a.AtBest == a.Passed {
+		best = words.AimStays
+	}
+	says := []string{c.Say(words.AimNow.With(a.Passed, a.Movements)), c.Say(best)}
+	if a.Near != a.Best {
+		says = append(says, c.Say(words.AimNear.With(shifts(c, a.Near))))
+	}
+	says = append(says, c.Say(words.AimSure.With(shifts(c, balance.Shift{Lo: a.Low, Hi: a.High}))))
+	if a.MRejects > 0 {
+		says = append(says, c.Say(words.AimRegulation.With(a.RegulationOnly, a.MRejects)))
+	}
+	return says
 }
 
 // shifts is an interval of shifts, drawn inwards so that every one shown serves.

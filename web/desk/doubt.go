@@ -27,14 +27,14 @@ func (d *Desk) Doubt(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
-	s := page.Sheet{Title: c.Say(words.DoubtTitle), Code: v.piece.Serial, Sub: v.sub(), Nav: page.BatchesURL, Styles: []string{"desk.css"},
+	s := page.Sheet{Title: c.Say(words.RateSheet), Code: v.piece.Serial, Sub: v.sub(), Nav: page.BatchesURL, Styles: []string{"desk.css"},
 		Back: &page.Link{Text: c.Say(words.RateSheet), URL: v.url()}}
 	return v.later().Answer(w, r, http.StatusOK, s, doubtBody(c, v.doubt()))
 }
 
 // later is the place of the doubt on the rate sheet.
 func (v movementView) later() page.Later {
-	return page.Later{ID: "doubt", Title: v.c.Say(words.DoubtTitle), Text: v.c.Say(words.DoubtShow), URL: page.DoubtURL(v.Batch.Code, v.piece.Serial)}
+	return page.Later{ID: "doubt", Title: v.c.Say(words.DoubtTitle), Text: v.c.Say(words.DoubtShow), URL: page.DoubtURL(v.Batch.Code, v.piece.Serial), Inner: true}
 }
 
 // doubtView is the doubt of a movement ready to be drawn.

@@ -90,10 +90,10 @@ func TestDoubtByHand(t *testing.T) {
 	text := func(i string) string {
 		return lead.page("/batches/26-001/movements/S-000" + i + "/doubt").all("#doubt")[0].text()
 	}
-	if got := text("1"); !strings.Contains(got, "pass wrong with a probability of below 0.1 %") {
+	if got := text("1"); !strings.Contains(got, "pass probability that it is wrong: below 0.1 %") {
 		t.Errorf("far from every limit: %s", got)
 	}
-	if got := text("2"); !strings.Contains(got, "pass wrong with a probability of 50.0 %") || !strings.Contains(got, "R Resumption of rate 50.0") {
+	if got := text("2"); !strings.Contains(got, "pass probability that it is wrong: 50.0 %") || !strings.Contains(got, "R Resumption of rate 50.0") {
 		t.Errorf("at the limit of R: %s", got)
 	}
 	if list := hingesOn(t, lead.page("/batches/26-001/movements/S-0002/doubt")); len(list) == 0 || list[0].change.Cmp(trial.Ratio(1, 1000)) > 0 {

@@ -14,6 +14,7 @@ type Later struct {
 	Title string
 	Text  string // of the link
 	URL   string // of the section as a page of its own
+	Inner bool   // for the laboratory's own screens: never printed
 }
 
 // LaterScript is the module that a page with such a place names.

@@ -160,7 +160,7 @@ func (p *Printer) findBeyond(f balance.Finding) Text {
 	case balance.FlatPair:
 		return findFlatPair.With(p.perDay(v[0], true))
 	case balance.Vertical:
-		return findVertical.With(p.perDay(v[0], false), p.perDay(v[2], false), p.degrees(v[1]), p.degrees(v[3]))
+		return findVertical.With(p.perDay(v[0], false), p.perDay(v[2], false), p.degrees(v[1]), Raw(p.Magnitude(v[3].String(), 1)))
 	case balance.FarPosition:
 		return findFar.With(days, at, p.perDay(v[0], true))
 	case balance.Thermal:
