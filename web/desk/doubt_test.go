@@ -78,14 +78,16 @@ func TestHingeFlipsTheVerdict(t *testing.T) {
 }
 
 // Movements worked out by hand. All days are +1.0, or all but day 15, which makes R +5.0, its limit
-// exactly: a flat prior then makes the doubt one half however small the uncertainty is.
+// exactly: a flat prior then makes the doubt one half however small the uncertainty is. With R = 4.95 it
+// is Φ(-0.05/0.0456) = 0.137, as R = (s15 - s14) - (s2 - s0)/2 has the variance 2.5 u², u = 0.1/√12.
 func TestDoubtByHand(t *testing.T) {
 	t.Parallel()
 	h, base := house(t)
-	h.Batch(t, "26-001", 3)
+	h.Batch(t, "26-001", 4)
 	far := strings.Fields(strings.Repeat("1.0 ", 15))
 	at := append(strings.Fields(strings.Repeat("1.0 ", 14)), "6.0") // R = +5.0, its limit
-	h.Run(t, "26-001", [][]string{far, at, far[:8]})
+	near := append(strings.Fields(strings.Repeat("1.0 ", 14)), "5.95")
+	h.Run(t, "26-001", [][]string{far, at, far[:8], near})
 	lead := visit(t, base, "lead")
 	text := func(i string) string {
 		return lead.page("/batches/26-001/movements/S-000" + i + "/doubt").all("#doubt")[0].text()
@@ -96,13 +98,16 @@ func TestDoubtByHand(t *testing.T) {
 	if got := text("2"); !strings.Contains(got, "pass probability that it is wrong: 50.0 %") || !strings.Contains(got, "R Resumption of rate 50.0") {
 		t.Errorf("at the limit of R: %s", got)
 	}
+	if got := text("4"); !strings.Contains(got, "pass probability that it is wrong: 13.7 %") {
+		t.Errorf("near the limit of R: %s", got)
+	}
 	if list := hingesOn(t, lead.page("/batches/26-001/movements/S-0002/doubt")); len(list) == 0 || list[0].change.Cmp(trial.Ratio(1, 1000)) > 0 {
 		t.Errorf("at the limit of R the nearest hinge is %v", list)
 	}
 	if got := text("3"); !strings.Contains(got, "There is no verdict to doubt") {
 		t.Errorf("without a verdict: %s", got)
 	}
-	for i := range 3 { // rates without states: what that assumes is said, and what the figures rest on
+	for i := range 4 { // rates without states: what that assumes is said, and what the figures rest on
 		if got := text(strconv.Itoa(i + 1)); !strings.Contains(got, "typed without states") || !strings.Contains(got, "0.1 s, standard uncertainty 0.029 s") {
 			t.Errorf("what it rests on: %s", got)
 		}
