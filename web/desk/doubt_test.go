@@ -2,13 +2,16 @@ package desk_test
 
 import (
 	"net/http"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
 
 	"ratehouse/store"
+	"ratehouse/store/storetest"
 	"ratehouse/trial"
 	"ratehouse/web/page"
+	"ratehouse/web/webtest"
 	"ratehouse/web/words"
 )
 
@@ -148,5 +151,32 @@ func TestDoubtIsForTheLead(t *testing.T) {
 		if strings.Contains(paper, bad) {
 			t.Errorf("the certificate says %q", bad)
 		}
+	}
+}
+
+// The aim stands below a table; nobody asks the laboratory for it before the reader comes near.
+func TestLaterIsAskedForWhenNear(t *testing.T) {
+	t.Parallel()
+	h, base := house(t)
+	good := strings.Fields(strings.Repeat("1.0 ", 15))
+	h.Batch(t, "26-001", 60)
+	h.Run(t, "26-001", slices.Repeat([][]string{good}, 60))
+	tab := webtest.Start(t, base)
+	tab.SignIn("lead", storetest.Password)
+	tab.Go("/batches/26-001")
+	tab.Until(`document.readyState === "complete"`)
+	asked := `performance.getEntriesByType("resource").filter(e => e.name.includes("/aim")).length`
+	if n := webtest.Eval[int](tab, asked); n != 0 {
+		t.Errorf("the aim was asked for %d times at the head of the page", n)
+	}
+	settled(tab)
+	if n := webtest.Eval[int](tab, asked); n != 1 {
+		t.Errorf("the aim was asked for %d times", n)
+	}
+	if got := tab.Text("#aim"); !strings.Contains(got, "As they are, 60 of 60") {
+		t.Errorf("the aim that came: %s", got)
+	}
+	if n := tab.Count("#aim"); n != 1 {
+		t.Errorf("%d places of the aim", n)
 	}
 }

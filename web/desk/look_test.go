@@ -82,10 +82,11 @@ func glance(t *testing.T, base, name string, pages [][2]string) {
 	}
 }
 
-// settled waits until the parts that are asked for later have come.
+// settled goes to the parts that are asked for later, waits until they have come, and goes back.
 func settled(tab *webtest.Tab) {
 	tab.T.Helper()
-	tab.Until(`!document.querySelector("a[data-later]")`)
+	tab.Until(`(() => { const a = document.querySelector("a[data-later]"); a?.scrollIntoView(); return !a })()`)
+	webtest.Eval[bool](tab, `(scrollTo(0, 0), true)`)
 }
 
 // narrow wants a page to fit a tablet's width, and leaves the window wide.

@@ -15,9 +15,18 @@ async function fill(link) {
   place.removeAttribute("aria-busy");
 }
 
-function fillAll() {
-  for (const link of document.querySelectorAll("a[data-later]")) fill(link);
+// Asked for only when it comes near the window: at the end of a long table most readers never do.
+const near = new IntersectionObserver((seen) => {
+  for (const { isIntersecting, target } of seen) {
+    if (!isIntersecting) continue;
+    near.unobserve(target);
+    fill(target);
+  }
+}, { rootMargin: "300px" });
+
+function watch() {
+  for (const link of document.querySelectorAll("a[data-later]")) near.observe(link);
 }
 
-if (document.readyState === "complete") fillAll();
-else addEventListener("load", fillAll);
+if (document.readyState === "complete") watch();
+else addEventListener("load", watch);
