@@ -30,6 +30,7 @@ const (
 	RightRegister     Right = "register"     // register batches, assign places
 	RightBatches      Right = "batches"      // see batches and their progress
 	RightVerdicts     Right = "verdicts"     // see criteria and verdicts: not for who is reading
+	RightDoubt        Right = "doubt"        // see how sure a verdict is, and on which reading it hangs
 	RightCorrect      Right = "correct"      // correct what another person read, or after closing
 	RightEnd          Right = "end"          // end a movement, take an end back
 	RightRemark       Right = "remark"       // write remarks
@@ -46,8 +47,8 @@ const (
 
 var rights = map[Role][]Right{
 	Technician: {RightSelf, RightToday, RightEnter, RightRegister, RightBatches, RightRemark, RightEnd},
-	Lead: {RightSelf, RightToday, RightEnter, RightRegister, RightBatches, RightVerdicts, RightCorrect, RightEnd, RightRemark,
-		RightAssess, RightRelease, RightCertificates, RightBench, RightSetup, RightJournal},
+	Lead: {RightSelf, RightToday, RightEnter, RightRegister, RightBatches, RightVerdicts, RightDoubt, RightCorrect, RightEnd,
+		RightRemark, RightAssess, RightRelease, RightCertificates, RightBench, RightSetup, RightJournal},
 	Adjuster: {RightSelf, RightBatches, RightVerdicts, RightBench},
 	Manager:  {RightSelf, RightToday, RightBatches, RightVerdicts, RightCertificates, RightSetup, RightAccounts, RightJournal},
 }

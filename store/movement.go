@@ -156,6 +156,10 @@ func movementOf(b *Batch, r *rows.Movement) Movement {
 	return m
 }
 
+// Cells are the readings behind the rates, step by step, as the engine assembles them; b is the batch
+// of the movement.
+func (m *Movement) Cells(b *Batch) []trial.Cell { return cellsOf(b, &m.series) }
+
 // corrections counts the entries that replaced another one: what the counters of the cells say.
 func corrections(s *rows.Series) (n int) {
 	for _, cells := range [][]int16{s.RateNth, s.FoundNth, s.LeftNth} {

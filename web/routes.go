@@ -4,6 +4,7 @@ import (
 	"net/http"
 
 	"ratehouse/store"
+	adjuster "ratehouse/web/bench" // bench is the floor's name below
 	"ratehouse/web/desk"
 	"ratehouse/web/floor"
 	"ratehouse/web/page"
@@ -34,6 +35,7 @@ type route struct {
 func (s *server) table() []route {
 	const get, post = http.MethodGet, http.MethodPost
 	bench, qa := floor.New(s.lab), desk.New(s.lab)
+	adjusters := adjuster.New(s.lab)
 	papers := paper.New(s.lab, guesses{s, newTries(s.lab.Now)})
 	return []route{
 		{get, "/", public, s.start},
@@ -70,11 +72,15 @@ func (s *server) table() []route {
 		{get, "/batches/{code}", needs(store.RightBatches), qa.Batch},
 		{get, "/batches/{code}" + page.LiveSuffix, needs(store.RightBatches), s.live},
 		{get, "/batches/{code}/sheets.csv", needs(store.RightVerdicts), qa.SheetsCSV},
+		{get, "/batches/{code}/aim", needs(store.RightVerdicts), qa.Aim},
 		{post, "/batches/{code}/remarks", needs(store.RightRemark), qa.AddRemark},
 		{post, "/batches/{code}/remarks/{remark}", needs(store.RightAssess), qa.MoveRemark},
 		{get, "/batches/{code}/movements/{serial}", needs(store.RightBatches), qa.Movement},
+		{get, "/batches/{code}/movements/{serial}/doubt", needs(store.RightDoubt), qa.Doubt},
 		{post, "/batches/{code}/movements/{serial}/readings", needs(store.RightCorrect), qa.Correct},
 		{post, "/batches/{code}/movements/{serial}/end", needs(store.RightEnd), qa.End},
+		{get, page.BenchURL, needs(store.RightBench), adjusters.Rejects},
+		{get, "/bench/{code}/{serial}", needs(store.RightBench), adjusters.Note},
 		{get, page.SearchURL, needs(store.RightBatches), qa.Search},
 	}
 }

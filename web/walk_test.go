@@ -27,7 +27,7 @@ func reached(t *testing.T, lab *store.Lab) (*server, chi.Router) {
 	}
 	// One more page and form for every right, so that each is tried whatever the table holds.
 	for _, right := range []store.Right{store.RightSelf, store.RightToday, store.RightEnter, store.RightRegister, store.RightBatches, store.RightVerdicts,
-		store.RightCorrect, store.RightEnd, store.RightRemark, store.RightAssess, store.RightRelease, store.RightCertificates, store.RightBench,
+		store.RightDoubt, store.RightCorrect, store.RightEnd, store.RightRemark, store.RightAssess, store.RightRelease, store.RightCertificates, store.RightBench,
 		store.RightSetup, store.RightAccounts, store.RightJournal} {
 		for _, method := range []string{http.MethodGet, http.MethodPost} {
 			s.routes = append(s.routes, route{method: method, pattern: "/right-" + string(right), access: needs(right)})
@@ -128,6 +128,11 @@ func TestNobodyReadsVerdictsWhileReading(t *testing.T) {
 	t.Parallel()
 	if store.Technician.May(store.RightVerdicts) {
 		t.Error("who reads may see verdicts: readings would bend towards them")
+	}
+	for _, role := range []store.Role{store.Technician, store.Adjuster, store.Manager} {
+		if role.May(store.RightDoubt) {
+			t.Errorf("a %s may see how sure a verdict is: that is for the lead", role)
+		}
 	}
 	for _, r := range []store.Right{store.RightRelease, store.RightAccounts, store.RightCorrect, store.RightAssess} {
 		if store.Technician.May(r) || store.Adjuster.May(r) {

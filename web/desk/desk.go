@@ -1,9 +1,6 @@
 package desk
 
 import (
-	"net/http"
-	"net/url"
-
 	"ratehouse/store"
 	"ratehouse/web/page"
 )
@@ -14,25 +11,17 @@ type Desk struct{ lab *store.Lab }
 // New makes the pages of a laboratory.
 func New(lab *store.Lab) *Desk { return &Desk{lab} }
 
-// param is a part of the address as it was meant; the router leaves escapes in it where there are any.
-func param(r *http.Request, name string) string {
-	v := r.PathValue(name)
-	if r.URL.RawPath == "" {
-		return v
-	}
-	if plain, err := url.PathUnescape(v); err == nil {
-		return plain
-	}
-	return v
-}
+// param is a part of the address as it was meant.
+var param = page.Param
 
 // rights are what the actor may do on these pages.
 type rights struct {
-	verdicts, enter, register, correct, end, remark, assess, release, papers bool
+	verdicts, doubt, enter, register, correct, end, remark, assess, release, papers, bench bool
 }
 
 func rightsOf(c *page.Context) rights {
 	may := c.Actor.May
-	return rights{may(store.RightVerdicts), may(store.RightEnter), may(store.RightRegister), may(store.RightCorrect), may(store.RightEnd),
-		may(store.RightRemark), may(store.RightAssess), may(store.RightRelease), may(store.RightCertificates)}
+	return rights{may(store.RightVerdicts), may(store.RightDoubt), may(store.RightEnter), may(store.RightRegister), may(store.RightCorrect), may(store.RightEnd),
+		may(store.RightRemark), may(store.RightAssess), may(store.RightRelease), may(store.RightCertificates),
+		may(store.RightBench)}
 }

@@ -181,5 +181,11 @@ func BenchmarkBatchPage(b *testing.B) {
 			}
 			b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/fetch, "x_series")
 		})
+		b.Run(code+"/aim", func(b *testing.B) { // asked for after the page, by itself
+			for b.Loop() {
+				render(b, h, h.Lead, pages.Aim, "/batches/"+code+"/aim?alone=yes", "code", code)
+			}
+			b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/fetch, "x_series")
+		})
 	}
 }

@@ -61,6 +61,7 @@ func look(t *testing.T, base, name string, pages [][2]string) {
 	tab.SignIn(name, storetest.Password)
 	for _, p := range pages {
 		tab.Go(p[1])
+		settled(tab)
 		tab.Shots("desk/" + p[0])
 		tab.AxeBoth()
 		narrow(tab, p[0])
@@ -74,10 +75,18 @@ func glance(t *testing.T, base, name string, pages [][2]string) {
 	tab.SignIn(name, storetest.Password)
 	for _, p := range pages {
 		tab.Go(p[1])
+		settled(tab)
 		tab.Shot("desk/" + p[0])
 		tab.Axe()
 		narrow(tab, p[0])
 	}
+}
+
+// settled goes to the parts that are asked for later, waits until they have come, and goes back.
+func settled(tab *webtest.Tab) {
+	tab.T.Helper()
+	tab.Until(`(() => { const a = document.querySelector("a[data-later]"); a?.scrollIntoView(); return !a })()`)
+	webtest.Eval[bool](tab, `(scrollTo(0, 0), true)`)
 }
 
 // narrow wants a page to fit a tablet's width, and leaves the window wide.
@@ -104,6 +113,8 @@ func TestPagesLook(t *testing.T) {
 	glance(t, base, "lead", [][2]string{
 		{"batch-chosen", "/batches/26-118?verdict=fail&sort=-M&dist=V&remark=new"},
 		{"ratesheet-fail", "/batches/26-118/movements/OD44-118240"},
+		{"aim", "/batches/26-118/aim?shift=1.5"},
+		{"doubt", "/batches/26-118/movements/OD44-118243/doubt"},
 		{"ratesheet-forms", "/batches/26-118/movements/OD44-118243?do=correct&remark=new"},
 	})
 	glance(t, base, "technician", [][2]string{
@@ -122,6 +133,7 @@ func TestGermanLook(t *testing.T) {
 	tab.Press(`button[value=de]`)
 	for _, p := range [][2]string{{"batches-de", "/batches"}, {"batch-de", "/batches/26-118"}, {"ratesheet-de", "/batches/26-121/movements/KW21-004504?do=correct"}} {
 		tab.Go(p[1])
+		settled(tab)
 		tab.Shot("desk/" + p[0])
 		if wide := webtest.Eval[bool](tab, `document.documentElement.scrollWidth > innerWidth`); wide {
 			t.Errorf("%s is wider than the screen", p[0])

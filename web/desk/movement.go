@@ -123,6 +123,9 @@ func (v movementView) sheet() page.Sheet {
 			s.Acts = append(s.Acts, page.Act{Text: c.Say(beside.text), URL: page.MovementURL(v.Batch.Code, beside.serial)})
 		}
 	}
+	if v.may.doubt {
+		s.Scripts = []string{page.LaterScript}
+	}
 	if v.may.correct && len(v.correctable()) > 0 {
 		s.Acts = append(s.Acts, page.Act{Text: c.Say(words.CorrectReading), URL: v.open(doCorrect, "")})
 	}
@@ -132,6 +135,9 @@ func (v movementView) sheet() page.Sheet {
 			text = words.EndBack
 		}
 		s.Acts = append(s.Acts, page.Act{Text: c.Say(text), URL: v.open(doEnd, "")})
+	}
+	if v.may.bench && v.result.Verdict == trial.Fail {
+		s.Acts = append(s.Acts, page.Act{Text: c.Say(words.BenchNoteTitle), URL: page.BenchNoteURL(v.Batch.Code, m.Serial)})
 	}
 	if v.may.verdicts && m.Paper != "" {
 		s.Acts = append(s.Acts, page.Act{Text: c.Say(paperWord(m.PaperKind)), URL: page.CertificateURL(m.Paper), Main: true})

@@ -1,6 +1,7 @@
 package page
 
 import (
+	"net/http"
 	"net/url"
 	"strconv"
 	"strings"
@@ -72,6 +73,15 @@ func RoundPlaceURL(code string, k int, holder, place string) string {
 // MovementURL is the rate sheet of a movement.
 func MovementURL(code, serial string) string { return under("batches", code, "movements", serial) }
 
+// DoubtURL is how sure the verdict of a movement is.
+func DoubtURL(code, serial string) string { return Under(MovementURL(code, serial), "doubt") }
+
+// AimURL is what a batch would yield with all its rates shifted.
+func AimURL(code string) string { return under("batches", code, "aim") }
+
+// BenchNoteURL is the note on a movement for the adjuster's bench.
+func BenchNoteURL(code, serial string) string { return under("bench", code, serial) }
+
 // CertificateURL is a released paper.
 func CertificateURL(number string) string { return under("certificates", number) }
 
@@ -103,4 +113,16 @@ func Local(target string) bool {
 	}
 	u, err := url.Parse(target)
 	return err == nil && u.Host == "" && u.Scheme == ""
+}
+
+// Param is a part of the address as it was meant; the router leaves escapes in it where there are any.
+func Param(r *http.Request, name string) string {
+	v := r.PathValue(name)
+	if r.URL.RawPath == "" {
+		return v
+	}
+	if plain, err := url.PathUnescape(v); err == nil {
+		return plain
+	}
+	return v
 }

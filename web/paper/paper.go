@@ -2,10 +2,10 @@ package paper
 
 import (
 	"net/http"
-	"net/url"
 	"time"
 
 	"ratehouse/store"
+	"ratehouse/web/page"
 )
 
 // Paper answers the pages about released papers of one laboratory. Its methods are page.Handlers.
@@ -26,14 +26,5 @@ func New(lab *store.Lab, limit Limit) *Paper { return &Paper{lab, limit} }
 // styles is the style sheet of papers.
 var styles = []string{"paper.css"}
 
-// param is a part of the address as it was meant; the router leaves escapes in it where there are any.
-func param(r *http.Request, name string) string {
-	v := r.PathValue(name)
-	if r.URL.RawPath == "" {
-		return v
-	}
-	if plain, err := url.PathUnescape(v); err == nil {
-		return plain
-	}
-	return v
-}
+// param is a part of the address as it was meant.
+var param = page.Param

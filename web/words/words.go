@@ -100,6 +100,7 @@ func (m M0) unsure(l ...Lang) M0         { m.e.doubts = l; return m }
 func (m M1) unsure(l ...Lang) M1         { m.e.doubts = l; return m }
 func (m M2) unsure(l ...Lang) M2         { m.e.doubts = l; return m }
 func (m M3) unsure(l ...Lang) M3         { m.e.doubts = l; return m }
+func (m M4) unsure(l ...Lang) M4         { m.e.doubts = l; return m }
 func (m Plural) unsure(l ...Lang) Plural { m.e.doubts = l; return m }
 
 func (m M0) text(p *Printer) string { return m.e.forms[p.lang][0] }
