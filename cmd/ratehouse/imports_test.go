@@ -23,7 +23,7 @@ var imports = []struct {
 	from string
 	to   []string
 }{
-	{"cmd/ratehouse", []string{"store/...", "trial/...", "web/...", "migrations"}},
+	{"cmd/ratehouse", []string{"store/...", "trial/...", "web/...", "migrations", "testdata"}},
 	{"tools/...", nil},
 	{"migrations", nil},
 

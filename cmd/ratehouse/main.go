@@ -53,7 +53,7 @@ func commands() []command {
 		{"token", "add, list or revoke tokens", `ratehouse token add -account ada -scope readings "bench 3" > token`, runToken, tokenFlags},
 		{"send", "send readings from a file to a server", "ratehouse send readings.csv", nil, nil},
 		{"tls", "make a certificate for the local network", "ratehouse tls init", nil, nil},
-		{"validate", "check the program against published values", "ratehouse validate", nil, nil},
+		{"validate", "check the program against published values", "ratehouse validate > validation-2026-12-01.json", runValidate, validateFlags},
 		{"version", "print the version", "ratehouse version", runVersion, nil},
 	}
 }

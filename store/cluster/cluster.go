@@ -27,7 +27,7 @@ var ErrInUse = errors.New("in use by another running program")
 type Config struct {
 	Bin       string            // folder of the server programs; empty: FindBin looks for them
 	Dir       string            // the cluster's directory; made when missing
-	Throwaway bool              // no durability at all: for tests only
+	Throwaway bool              // no durability at all: for tests and validation
 	Settings  map[string]string // further server settings, by PostgreSQL's names
 	Logf      func(format string, args ...any)
 }

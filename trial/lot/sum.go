@@ -16,12 +16,8 @@ func (s *sum) add(x float64) {
 	s.hi = t
 }
 
-// addProduct adds a·b, rounding error included.
-func (s *sum) addProduct(a, b float64) {
-	p := a * b
-	s.add(p)
-	s.lo += math.FMA(a, b, -p)
-}
+// addProduct adds a·b.
+func (s *sum) addProduct(a, b float64) { s.add(a * b) }
 
 func (s sum) value() float64 { return s.hi + s.lo }
 
