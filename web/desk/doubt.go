@@ -54,6 +54,7 @@ type chanceRow struct{ Symbol, Title, Chance string }
 // hingeRow is one reading that alone flips the verdict.
 type hingeRow struct {
 	Round, Change, Symbol string
+	Left                  bool // as left after the hands were set, not as found
 	To                    part.Judged
 }
 
@@ -104,6 +105,6 @@ func (d *doubtView) hinges(v movementView, list []conformity.Hinge) {
 	}
 	for _, h := range list[:min(len(list), mostHinges)] {
 		d.Hinges = append(d.Hinges, hingeRow{itoa(h.Reading.Step), v.c.Signed(h.Change.String(), 3), v.Batch.Programme.Criteria[h.Criterion].Symbol,
-			part.JudgedOf(h.To, false, "")})
+			h.Reading.Left, part.JudgedOf(h.To, false, "")})
 	}
 }
