@@ -5,6 +5,7 @@ import (
 	"slices"
 	"strconv"
 
+	"ratehouse/store"
 	"ratehouse/trial"
 	"ratehouse/trial/conformity"
 	"ratehouse/web/page"
@@ -44,6 +45,7 @@ type doubtView struct {
 	Each    []chanceRow
 	Hinges  []hingeRow
 	NoHinge words.Text // why there is none
+	Ended   bool       // left the trial: what is said is of its rates
 	Typed   bool       // rates without states: that they share readings is assumed
 	Step, U string
 }
@@ -62,6 +64,7 @@ func (v movementView) doubt() doubtView {
 	c, layout := v.c, conformity.Recorded(v.Batch.Programme, v.Batch.Steps, v.piece.Movement.Cells(&v.Batch))
 	step, u := part.ResolutionText()
 	d := doubtView{Verdict: part.JudgedOf(v.result.Verdict, v.cannot, ""), Step: c.Magnitude(step, 1), U: c.Magnitude(u, 3),
+		Ended: v.piece.End != store.InTrial,
 		Typed: slices.ContainsFunc(layout, func(s conformity.Stretch) bool { return s.Typed })}
 	chances := v.chances(layout)
 	if p, ok := chances.Doubt(v.result.Verdict); ok {

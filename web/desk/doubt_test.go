@@ -126,6 +126,10 @@ func TestDoubtByHand(t *testing.T) {
 	if got := text("4"); !strings.Contains(got, "pass probability that it is wrong: 13.7 %") {
 		t.Errorf("near the limit of R: %s", got)
 	}
+	must(t, h.EndMovement(t.Context(), h.Lead, "26-001", "S-0001", store.Rejected, "stopped", ""))
+	if got := text("1"); !strings.Contains(got, "of its rates alone") {
+		t.Errorf("rejected for cause: %s", got)
+	}
 	if list := hingesOn(t, lead.page("/batches/26-001/movements/S-0002/doubt")); len(list) == 0 || list[0].change.Cmp(trial.Ratio(1, 1000)) > 0 {
 		t.Errorf("at the limit of R the nearest hinge is %v", list)
 	}

@@ -9,6 +9,7 @@ var (
 	DoubtTyped   = say("Some rates were typed without states; that they share their readings with the days beside them is assumed.", "Des marches ont été saisies sans états ; on suppose qu’elles partagent leurs relevés avec les jours voisins.", "Einige Gänge wurden ohne Stände eingegeben; angenommen wird, dass sie ihre Ablesungen mit den Nachbartagen teilen.")
 	DoubtOf      = say1("probability that it is wrong: {percent} %", "probabilité qu’il soit faux : {percent} %", "Wahrscheinlichkeit, dass es falsch ist: {percent} %")
 	DoubtNone    = say("There is no verdict to doubt.", "Il n’y a pas de verdict à mettre en doute.", "Es gibt kein Urteil, das zu bezweifeln wäre.")
+	DoubtEnded   = say("It has left the trial: this speaks of its rates alone.", "Il est sorti de l’épreuve : ceci ne parle que de ses marches.", "Es ist aus der Prüfung ausgeschieden: Hier geht es nur um seine Gänge.")
 	ChanceInside = say("Truly inside, %", "Vraiment dans les limites, %", "Wirklich innerhalb, %")
 	HingeTitle   = say("On which reading it hangs", "De quel relevé il dépend", "An welcher Ablesung es hängt")
 	HingeNone    = say("No change of a single reading would make it another verdict.", "Aucun changement d’un seul relevé ne donnerait un autre verdict.", "Keine Änderung einer einzelnen Ablesung ergäbe ein anderes Urteil.")
