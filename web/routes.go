@@ -72,6 +72,7 @@ func (s *server) table() []route {
 		{get, "/batches/{code}", needs(store.RightBatches), qa.Batch},
 		{get, "/batches/{code}" + page.LiveSuffix, needs(store.RightBatches), s.live},
 		{get, "/batches/{code}/sheets.csv", needs(store.RightVerdicts), qa.SheetsCSV},
+		{get, "/batches/{code}/outlook", needs(store.RightVerdicts), qa.Outlook},
 		{get, "/batches/{code}/aim", needs(store.RightVerdicts), qa.Aim},
 		{post, "/batches/{code}/remarks", needs(store.RightRemark), qa.AddRemark},
 		{post, "/batches/{code}/remarks/{remark}", needs(store.RightAssess), qa.MoveRemark},

@@ -75,7 +75,7 @@ var drawn = []string{module + "/trial/simulate", module + "/trial/simulate/rival
 // pure is what the engine may use of the standard library: no clock, no context, no files, no
 // network, no log. Its one room for tables and numbers reads and writes, and parses instants.
 var (
-	pure = []string{"cmp", "errors", "fmt", "iter", "maps", "math", "math/...", "slices", "sort", "strconv", "strings", "sync", "unicode", "unicode/utf8"}
+	pure = []string{"cmp", "encoding/binary", "errors", "fmt", "iter", "maps", "math", "math/...", "slices", "sort", "strconv", "strings", "sync", "unicode", "unicode/utf8"}
 	room = map[string][]string{
 		"trial/sheet": {"bufio", "bytes", "crypto/sha256", "embed", "encoding/csv", "encoding/hex", "encoding/json", "hash/...", "io", "time", "unicode/..."},
 	}

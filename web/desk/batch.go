@@ -67,7 +67,7 @@ func (v batchView) sheet() page.Sheet {
 	s := page.Sheet{Title: c.Say(words.BatchTitle.With(b.Code)), Sub: v.sub(), Back: &page.Link{Text: c.Say(words.BatchesAll), URL: page.BatchesURL},
 		Nav: page.BatchesURL, Acts: v.acts(), Live: page.LiveURL(b.Code), Styles: []string{"desk.css"}}
 	s.Cells = v.cells()
-	if v.may.verdicts && v.asksAim() {
+	if v.may.verdicts && (v.asksAim() || v.asksOutlook()) {
 		s.Scripts = []string{page.LaterScript}
 	}
 	return s

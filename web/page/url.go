@@ -76,6 +76,9 @@ func MovementURL(code, serial string) string { return under("batches", code, "mo
 // DoubtURL is how sure the verdict of a movement is.
 func DoubtURL(code, serial string) string { return Under(MovementURL(code, serial), "doubt") }
 
+// OutlookURL is what the open movements of a batch will probably do.
+func OutlookURL(code string) string { return under("batches", code, "outlook") }
+
 // AimURL is what a batch would yield with all its rates shifted.
 func AimURL(code string) string { return under("batches", code, "aim") }
 

@@ -28,5 +28,7 @@ function watch() {
   for (const link of document.querySelectorAll("a[data-later]")) near.observe(link);
 }
 
+document.addEventListener("drawn", watch); // a live page has put its links back (live.js)
+
 if (document.readyState === "complete") watch();
 else addEventListener("load", watch);

@@ -34,6 +34,7 @@ if (main) {
   function replace(fresh) {
     const at = main.contains(document.activeElement) ? document.activeElement.getAttribute("href") : null;
     main.replaceChildren(...fresh.childNodes);
+    document.dispatchEvent(new Event("drawn"));
     if (at) main.querySelector(`a[href="${CSS.escape(at)}"]`)?.focus({ preventScroll: true });
   }
 

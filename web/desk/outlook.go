@@ -1,0 +1,106 @@
+package desk
+
+import (
+	"cmp"
+	"net/http"
+	"slices"
+	"strconv"
+
+	"ratehouse/store"
+	"ratehouse/trial"
+	"ratehouse/trial/outlook"
+	"ratehouse/web/page"
+	"ratehouse/web/words"
+)
+
+// mostUnlikely is how many movements the list shows.
+const mostUnlikely = 20
+
+// Outlook is what the open movements of a batch will probably do.
+func (d *Desk) Outlook(w http.ResponseWriter, r *http.Request) error {
+	c := page.Of(r)
+	s, err := d.lab.BatchSheet(r.Context(), c.Actor, param(r, "code"))
+	if err != nil {
+		return err
+	}
+	h, err := d.lab.HistoryOf(r.Context(), c.Actor, &s.Batch)
+	if err != nil {
+		return err
+	}
+	v, err := outlookOf(c, &s, h)
+	if err != nil {
+		return err
+	}
+	frame := page.Sheet{Title: c.Say(words.BatchTitle.With(s.Batch.Code)), Sub: forWhom(c, &s.Batch), Nav: page.BatchesURL, Styles: []string{"desk.css"},
+		Back: &page.Link{Text: c.Say(words.BatchTitle.With(s.Batch.Code)), URL: page.BatchURL(s.Batch.Code)}}
+	return outlookPlace(c, s.Batch.Code).Answer(w, r, http.StatusOK, frame, outlookBody(c, v))
+}
+
+// outlookPlace is where the outlook stands on the page of a batch.
+func outlookPlace(c *page.Context, code string) page.Later {
+	return page.Later{ID: "outlook", Title: c.Say(words.OutlookTitle), Text: c.Say(words.OutlookShow), URL: page.OutlookURL(code), Inner: true}
+}
+
+// asksOutlook tells whether anything is open.
+func (v batchView) asksOutlook() bool { return v.all().Open > 0 }
+
+// outlookView is the outlook of a batch ready to be drawn.
+type outlookView struct {
+	Lead, History string // Lead is "" when nothing is open
+	Rows          []outlookRow
+}
+
+type outlookRow struct {
+	Serial, URL, Place, Read, Chance string
+	p                                float64
+}
+
+func outlookOf(c *page.Context, s *store.BatchSheet, h store.History) (outlookView, error) {
+	j, err := trial.NewJudge(s.Batch.Programme, s.Batch.Category)
+	if err != nil {
+		return outlookView{}, err
+	}
+	forecast, err := outlook.New(j, h.All, h.Own)
+	if err != nil {
+		return outlookView{}, err
+	}
+	sum, err := s.Summarise()
+	if err != nil {
+		return outlookView{}, err
+	}
+	var v outlookView
+	expected, result := 0.0, trial.Result{}
+	for i := range s.Movements {
+		m := &s.Movements[i]
+		if j.Rates(m.Rates, &result); m.End != store.InTrial || result.Verdict != trial.Open {
+			continue
+		}
+		p, ok := forecast.Chance(m.Rates)
+		if !ok {
+			continue
+		}
+		expected += p
+		v.Rows = append(v.Rows, outlookRow{m.Serial, page.MovementURL(s.Batch.Code, m.Serial), placeText(m), strconv.Itoa(daysRead(m)), c.Chance(probability(p), 1), p})
+	}
+	if len(v.Rows) == 0 {
+		return v, nil
+	}
+	pass, all := int(expected+0.5), sum.All()
+	v.Lead = c.Say(words.OutlookLead.With(len(v.Rows), pass, c.Share(all.Pass+pass, all.Judged()+len(v.Rows))))
+	if v.History = c.Say(words.OutlookNoPast); h.All.N() > 0 {
+		v.History = c.Say(words.OutlookHistory.With(int(h.Own.N()), int(h.All.N())))
+	}
+	slices.SortStableFunc(v.Rows, func(a, b outlookRow) int { return cmp.Compare(a.p, b.p) })
+	v.Rows = v.Rows[:min(len(v.Rows), mostUnlikely)]
+	return v, nil
+}
+
+// daysRead counts the days of a movement that have a rate.
+func daysRead(m *store.Movement) (n int) {
+	for _, r := range m.Rates {
+		if r.Known() {
+			n++
+		}
+	}
+	return n
+}
