@@ -61,7 +61,7 @@ find_chromium() {
 }
 
 find_font() {
-  [ -n "$(find "$system/usr/share/fonts" "$cache/chromium/root/usr/share/fonts" "$system/Library/Fonts" \
+  [ -n "$(find "$system/usr/share/fonts" "$cache/chromium/tree/usr/share/fonts" "$system/Library/Fonts" \
     \( -name '*.ttf' -o -name '*.otf' \) -print -quit 2>/dev/null)" ]
 }
 
@@ -160,12 +160,12 @@ install_unpacked() {
 
 unpack() {
   local debs=$2/debs deb
-  mkdir -p "$debs" "$2/root"
+  mkdir -p "$debs" "$2/tree"
   needed "$1" >"$2/packages"
   (cd "$debs" && xargs apt-get "${apt_options[@]}" -o Dir::State::lists="$cache/apt/lists" -o Dir::Cache="$cache/apt" \
     -o Debug::NoLocking=1 download <"$2/packages") || return 1
   for deb in "$debs"/*.deb; do
-    dpkg -x "$deb" "$2/root" || return 1
+    dpkg -x "$deb" "$2/tree" || return 1
   done
   rm -r "$debs"
 }
@@ -195,16 +195,16 @@ wrapper() {
 
 wrap_postgres() {
   local program bin
-  bin=$(ls -d "$cache"/pg/root/usr/lib/postgresql/*/bin 2>/dev/null | sort -rV | head -n 1)
+  bin=$(ls -d "$cache"/pg/tree/usr/lib/postgresql/*/bin 2>/dev/null | sort -rV | head -n 1)
   [ -n "$bin" ] || return 0
   for program in "$bin"/*; do
     wrapper "$program" "$cache/pg/bin/$(basename "$program")" \
-      "export LD_LIBRARY_PATH=\"$(libraries "$cache/pg/root")\${LD_LIBRARY_PATH:+:\$LD_LIBRARY_PATH}\""
+      "export LD_LIBRARY_PATH=\"$(libraries "$cache/pg/tree")\${LD_LIBRARY_PATH:+:\$LD_LIBRARY_PATH}\""
   done
 }
 
 wrap_chromium() {
-  local root=$cache/chromium/root program
+  local root=$cache/chromium/tree program
   program=$(ls "$root/usr/lib/chromium/$light" "$root/usr/lib/chromium/chromium" 2>/dev/null | head -n 1)
   [ -n "$program" ] || return 0
   cat >"$cache/chromium/fonts.conf" <<EOF
