@@ -21,12 +21,12 @@ func everyday(t testing.TB) (h *storetest.House, base string) {
 	must(t, err)
 	_, err = h.AddDepositor(ctx, lead, store.Depositor{Code: "ONDREL", Title: "Ondrel Movements"})
 	must(t, err)
-	lot(t, h, "26-118", 80, 15, 118, forWhom("ONDREL", "OD4410"), numbered("OD44", 118201))
+	lot(t, h, "26-118", 60, 15, 118, forWhom("ONDREL", "OD4410"), numbered("OD44", 118201))
 	must(t, h.EndMovement(ctx, lead, "26-118", "OD44-118240", store.Rejected, "stopped on day 4", store.Stopped))
 	must(t, h.EndMovement(ctx, lead, "26-118", "OD44-118270", store.Void, "dropped at the bench", store.Dropped))
 	must(t, h.EndMovement(ctx, lead, "26-118", "OD44-118276", store.Withdrawn, "asked back by telephone", ""))
 	h.Clock.Set(start.Add(7 * day))
-	b := lot(t, h, "26-121", 60, 9, 121, forWhom("KESTWICK", "KW21"), numbered("KW21", 4381))
+	b := lot(t, h, "26-121", 42, 9, 121, forWhom("KESTWICK", "KW21"), numbered("KW21", 4381))
 	must(t, h.EndMovement(ctx, h.Technician, "26-121", "KW21-004462", store.Void, "dropped at the bench", store.Dropped))
 	must(t, h.AddRemark(ctx, h.Technician, "26-121", "KW21-004420", 5, "read 14 min late; the rate is taken over the time that really passed"))
 	must(t, h.AddRemark(ctx, h.Technician, "26-121", "", 7, "chamber door found open for two minutes"))
@@ -165,5 +165,5 @@ func TestLongLook(t *testing.T) {
 		"stands still since the third round although it was wound, the crown turns without resistance and the barrel arbor is seen to slip", store.Stopped))
 	must(t, h.AddRemark(t.Context(), h.Lead, code, "", -1,
 		"The box arrived with a cracked lid; the depositor was told on the telephone and asked us to go on, in writing on the next day. Nothing was seen on the movements themselves."))
-	look(t, base, "lead", [][2]string{{"batches-long", "/batches"}, {"batch-long", "/batches/" + code}, {"ratesheet-long", page.MovementURL(code, serial(3))}})
+	glance(t, base, "lead", [][2]string{{"batches-long", "/batches"}, {"batch-long", "/batches/" + code}, {"ratesheet-long", page.MovementURL(code, serial(3))}})
 }
