@@ -19,8 +19,9 @@ demo: ## serve an invented laboratory on this machine
 	@tools/setup.sh postgres
 	@$(WITH_TOOLS) go run ./cmd/ratehouse demo
 
+# One package more than there are processors: some tests wait for programs to start and end.
 test: setup ## run all tests, those in a real browser and database included
-	@$(WITH_TOOLS) go run ./tools/runtests $(TESTFLAGS) ./...
+	@$(WITH_TOOLS) go run ./tools/runtests -p $$(($$(getconf _NPROCESSORS_ONLN) + 1)) $(TESTFLAGS) ./...
 
 check: setup generated format vet staticcheck setup-test race fuzz ## what CI checks beyond the tests
 
