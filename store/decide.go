@@ -264,7 +264,7 @@ func (s *saving) fit(it *item, v int64) *no {
 	}
 	half := int64(it.dialHours()) * 3_600_000 / 2
 	if it.Method == Camera || it.Method == FullTime {
-		v = fold(v, 2*half)
+		v = entry.Fold(v, 2*half)
 	}
 	if v > half || v < -half {
 		return &no{"beyond_half_dial", []string{"value", it.Value, "hours", strconv.Itoa(it.dialHours())}}
@@ -274,18 +274,6 @@ func (s *saving) fit(it *item, v int64) *no {
 }
 
 func (it *item) dialHours() int { return max(12, it.batch.Calibre.DialHours) }
-
-// fold brings a state into (-period/2, +period/2].
-func fold(v, period int64) int64 {
-	v %= period
-	if v > period/2 {
-		v -= period
-	}
-	if v <= -period/2 {
-		v += period
-	}
-	return v
-}
 
 func (s *saving) checkReader(it *item) *no {
 	it.reader = s.actor.Account

@@ -35,8 +35,7 @@ func (d *Desk) Aim(w http.ResponseWriter, r *http.Request) error {
 	}
 	form := shiftForm(c, r.URL.Query().Get("shift"))
 	v := aimViewOf(c, s.Batch.Code, judgedRates(&s), j, form)
-	frame := page.Sheet{Title: c.Say(words.BatchTitle.With(s.Batch.Code)), Sub: forWhom(c, &s.Batch), Nav: page.BatchesURL, Styles: []string{"desk.css"},
-		Back: &page.Link{Text: c.Say(words.BatchTitle.With(s.Batch.Code)), URL: page.BatchURL(s.Batch.Code)}}
+	frame := partFrame(c, &s.Batch)
 	status := http.StatusOK
 	if !form.OK() {
 		status = form.Status()

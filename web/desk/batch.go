@@ -73,6 +73,13 @@ func (v batchView) sheet() page.Sheet {
 	return s
 }
 
+// partFrame is the frame of a part of a batch's page when it stands on a page of its own.
+func partFrame(c *page.Context, b *store.Batch) page.Sheet {
+	title := c.Say(words.BatchTitle.With(b.Code))
+	return page.Sheet{Title: title, Sub: forWhom(c, b), Nav: page.BatchesURL, Styles: []string{"desk.css"},
+		Back: &page.Link{Text: title, URL: page.BatchURL(b.Code)}}
+}
+
 // sub says in one line what the batch is.
 func (v batchView) sub() string {
 	size := words.Movements.With(v.Batch.Size)

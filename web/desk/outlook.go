@@ -27,12 +27,15 @@ func (d *Desk) Outlook(w http.ResponseWriter, r *http.Request) error {
 	if err != nil {
 		return err
 	}
-	v, err := outlookOf(c, &s, h)
+	b, err := judgeBatch(s)
 	if err != nil {
 		return err
 	}
-	frame := page.Sheet{Title: c.Say(words.BatchTitle.With(s.Batch.Code)), Sub: forWhom(c, &s.Batch), Nav: page.BatchesURL, Styles: []string{"desk.css"},
-		Back: &page.Link{Text: c.Say(words.BatchTitle.With(s.Batch.Code)), URL: page.BatchURL(s.Batch.Code)}}
+	v, err := outlookOf(c, b, h)
+	if err != nil {
+		return err
+	}
+	frame := partFrame(c, &s.Batch)
 	return outlookPlace(c, s.Batch.Code).Answer(w, r, http.StatusOK, frame, outlookBody(c, v))
 }
 
@@ -55,24 +58,16 @@ type outlookRow struct {
 	p                                float64
 }
 
-func outlookOf(c *page.Context, s *store.BatchSheet, h store.History) (outlookView, error) {
-	j, err := trial.NewJudge(s.Batch.Programme, s.Batch.Category)
-	if err != nil {
-		return outlookView{}, err
-	}
-	forecast, err := outlook.New(j, h.All, h.Own)
-	if err != nil {
-		return outlookView{}, err
-	}
-	sum, err := s.Summarise()
+func outlookOf(c *page.Context, b *judged, h store.History) (outlookView, error) {
+	forecast, err := outlook.New(b.judge, h.All, h.Own)
 	if err != nil {
 		return outlookView{}, err
 	}
 	var v outlookView
-	expected, result := 0.0, trial.Result{}
-	for i := range s.Movements {
-		m := &s.Movements[i]
-		if j.Rates(m.Rates, &result); m.End != store.InTrial || result.Verdict != trial.Open {
+	expected := 0.0
+	for i := range b.pieces {
+		m := b.pieces[i].Movement
+		if m.End != store.InTrial || b.pieces[i].result.Verdict != trial.Open {
 			continue
 		}
 		p, ok := forecast.Chance(m.Rates)
@@ -80,12 +75,12 @@ func outlookOf(c *page.Context, s *store.BatchSheet, h store.History) (outlookVi
 			continue
 		}
 		expected += p
-		v.Rows = append(v.Rows, outlookRow{m.Serial, page.MovementURL(s.Batch.Code, m.Serial), placeText(m), strconv.Itoa(daysRead(m)), c.Chance(probability(p), 1), p})
+		v.Rows = append(v.Rows, outlookRow{m.Serial, page.MovementURL(b.Batch.Code, m.Serial), placeText(m), strconv.Itoa(daysRead(m)), c.Chance(probability(p), 1), p})
 	}
 	if len(v.Rows) == 0 {
 		return v, nil
 	}
-	pass, all := int(expected+0.5), sum.All()
+	pass, all := int(expected+0.5), b.all()
 	v.Lead = c.Say(words.OutlookLead.With(len(v.Rows), pass, c.Share(all.Pass+pass, all.Judged()+len(v.Rows))))
 	if v.History = c.Say(words.OutlookNoPast); h.All.N() > 0 {
 		v.History = c.Say(words.OutlookHistory.With(int(h.Own.N()), int(h.All.N())))
