@@ -57,27 +57,30 @@ func correct(t testing.TB, h *storetest.House, code, serial string, k int, by, w
 // them.
 func look(t *testing.T, base, name string, pages [][2]string) {
 	t.Helper()
-	tab := webtest.Start(t, base)
-	tab.SignIn(name, storetest.Password)
-	for _, p := range pages {
-		tab.Go(p[1])
-		settled(tab)
-		tab.Shots("desk/" + p[0])
+	each(t, base, name, pages, func(tab *webtest.Tab, picture string) {
+		tab.Shots(picture)
 		tab.AxeBoth()
-		narrow(tab, p[0])
-	}
+	})
 }
 
 // glance is look for another state of a page: one picture.
 func glance(t *testing.T, base, name string, pages [][2]string) {
+	t.Helper()
+	each(t, base, name, pages, func(tab *webtest.Tab, picture string) {
+		tab.Shot(picture)
+		tab.Axe()
+	})
+}
+
+// each shows pages to somebody one after the other, whole, and wants them to fit a tablet.
+func each(t *testing.T, base, name string, pages [][2]string, see func(tab *webtest.Tab, picture string)) {
 	t.Helper()
 	tab := webtest.Start(t, base)
 	tab.SignIn(name, storetest.Password)
 	for _, p := range pages {
 		tab.Go(p[1])
 		settled(tab)
-		tab.Shot("desk/" + p[0])
-		tab.Axe()
+		see(tab, "desk/"+p[0])
 		narrow(tab, p[0])
 	}
 }
